@@ -1,0 +1,7 @@
+import { methods } from "@/lib/http/methods";
+import { route } from "@/lib/http/route";
+import { retryJob } from "@/lib/services/jobs/cancel";
+
+export const { GET, POST, PUT, PATCH, DELETE } = methods({
+  POST: route({ scope: "jobs:write" }, async ({ actor, params }) => retryJob(actor, params.id)),
+});

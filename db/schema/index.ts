@@ -1,0 +1,4 @@
+export * from "./accounts";
+export * from "./samples";
+export * from "./jobs";
+export * from "./operations";

@@ -1,0 +1,125 @@
+/**
+ * The sure path for convex systems: damped Newton at fixed activity coefficients, inside a search over ionic strength.
+ *
+ * Core. At fixed γ and a_w the balances are the gradient of  f(y) = Σ_i c_i(y) − T·y, convex because its Hessian is Σ c_i N_i N_iᵀ.
+ * A sum of exponentials satisfies |f‴| ≤ β·f″ along a direction d with β = max_i |N_i·d|, and for such functions the Newton step
+ * cut by  t = ln(1 + β)/β  decreases f and converges from anywhere (Sun & Tran-Dinh 2019, Math. Program. 178:145). From below a
+ * lone balance is solved in one step. (White, Johnson & Dantzig 1958, J. Chem. Phys. 28:751 for the minimisation.)
+ * Stop: max_a |P_a − Q_a|/(P_a + Q_a) ≤ 2e-13, or ≤ 1e-11 and not halved. Bound: 400 steps.
+ *
+ * Water. a_w follows Σc by fixed-point steps (each contracts by about 0.017·Σ w c), then by halving a bracket: at most 90.
+ *
+ * Strength. φ(I) = I(c at I) − I is positive at I = 0, and up to I = 0.4, where every activity model keeps the problem strictly convex, it
+ * changes sign at most once. So φ(0.4) < 0 brackets the answer below 0.4; otherwise I rises by a factor 1.2 until φ changes sign. The bracket
+ * is closed by secants and bisection (of ln I while it is wide). The first sign change is the root of lowest I, which is the answer.
+ * None up to 30 mol/kg: no finite solution.
+ */
+import { assembleJacobian, evaluateActivity, evaluateSystem } from "./evaluate";
+import { solveDense } from "./linear";
+import type { System } from "./system";
+import type { Tableau } from "./tableau";
+import type { Workspace } from "./workspace";
+
+const STOP = 2e-13;
+const ROUNDING = 1e-11;
+const CORE_STEPS = 400;
+const WATER_STEPS = 90;
+const HIGHEST_STRENGTH = 30;
+/** Ionic strength up to which there is one root at most, mol/kg: 0.66 for Davies with |z| ≤ 3 at 25 °C, lower in hot water. */
+export const CONVEX_STRENGTH = 0.4;
+/** Sum of solutes at which 1 − 0.017·Σc reaches 0.02. */
+export const MOST_SOLUTES = 57.6;
+const LEAST_STRENGTH = 1e-12;
+
+export type SureResult = "solved" | "no-finite-solution" | "failed";
+
+/** Solves a convex system from `ws.y`. On "solved" the state is in `ws.y`, `ws.cs`, `ws.ionicStrength`, `ws.soluteSum`. */
+export function solveSurely(system: System, tableau: Tableau, ws: Workspace): SureResult {
+  if (tableau.gamma.isIdeal) return core(system, tableau, ws) ? "solved" : "failed";
+  let low = LEAST_STRENGTH;
+  let high = CONVEX_STRENGTH;
+  let phiHigh = strengthError(system, tableau, ws, high);
+  let phiLow = phiHigh;
+  if (phiHigh <= 0) phiLow = strengthError(system, tableau, ws, low);
+  while (phiHigh > 0) {
+    low = high;
+    phiLow = phiHigh;
+    high *= 1.2;
+    if (high > HIGHEST_STRENGTH) return "no-finite-solution";
+    phiHigh = strengthError(system, tableau, ws, high);
+  }
+  if (!Number.isFinite(phiLow) || !Number.isFinite(phiHigh)) return "failed";
+  return closeBracket(system, tableau, ws, { low, phiLow, high, phiHigh });
+}
+
+interface Bracket { low: number; phiLow: number; high: number; phiHigh: number }
+
+function closeBracket(system: System, tableau: Tableau, ws: Workspace, b: Bracket): SureResult {
+  for (let k = 0; k < 200; k++) {
+    if (Math.abs(b.phiLow) <= STOP * b.low || b.high - b.low <= 2e-16 * b.high) break;
+    // Every third step halves the bracket, so that the secant cannot stall on one side.
+    const secant = b.low + (b.high - b.low) * (b.phiLow / (b.phiLow - b.phiHigh));
+    const half = b.high > 4 * b.low ? Math.sqrt(b.low * b.high) : 0.5 * (b.low + b.high);
+    const middle = k % 3 === 2 || !(secant > b.low && secant < b.high) ? half : secant;
+    const phi = strengthError(system, tableau, ws, middle);
+    if (!Number.isFinite(phi)) return "failed";
+    if (Math.abs(phi) <= STOP * middle) return "solved";
+    if (phi > 0) { b.low = middle; b.phiLow = phi; } else { b.high = middle; b.phiHigh = phi; }
+  }
+  return Number.isFinite(strengthError(system, tableau, ws, b.low)) ? "solved" : "failed";
+}
+
+/** φ(I), with the core solved at γ(I); NaN where the core did not converge, huge where the solutes outgrow the water activity's law. */
+function strengthError(system: System, tableau: Tableau, ws: Workspace, ionicStrength: number): number {
+  ws.ionicStrength = ionicStrength;
+  let low = 0;
+  let high = MOST_SOLUTES;
+  ws.soluteSum = Math.min(ws.soluteSum, high);
+  for (let k = 0; k < WATER_STEPS; k++) {
+    evaluateActivity(tableau, ws);
+    if (!core(system, tableau, ws)) return NaN;
+    if (Math.abs(ws.sumM - ws.soluteSum) <= 1e-14 * (1 + ws.sumM)) return ws.sumI - ionicStrength;
+    if (ws.sumM > ws.soluteSum) low = ws.soluteSum; else high = ws.soluteSum;
+    if (low >= MOST_SOLUTES) return Number.MAX_VALUE;
+    // Plain steps first; then halving, which cannot oscillate: the more solutes, the less water, and so the fewer solutes.
+    const isInside = ws.sumM > low && ws.sumM < high;
+    ws.soluteSum = k < 8 && ws.sumM < MOST_SOLUTES ? ws.sumM : isInside && k % 2 === 0 ? ws.sumM : ws.sumM > high && high === MOST_SOLUTES ? high : 0.5 * (low + high);
+  }
+  return Math.abs(high - low) <= 1e-9 * (1 + high) ? ws.sumI - ionicStrength : NaN;
+}
+
+/** Newton at the activity coefficients in `ws`; @returns whether it converged. */
+function core(system: System, tableau: Tableau, ws: Workspace): boolean {
+  if (tableau.gamma.isIdeal) evaluateActivity(tableau, ws);
+  let previous = Infinity;
+  for (let step = 0; step <= CORE_STEPS; step++) {
+    evaluateSystem(system, ws);
+    let error = 0;
+    for (let a = 0; a < system.size; a++) {
+      const f = (ws.plus[a] - ws.minus[a]) / (ws.plus[a] + ws.minus[a]);
+      ws.step[a] = -f;
+      if (!(Math.abs(f) <= error)) error = Math.abs(f);
+    }
+    if (!Number.isFinite(error)) return false;
+    if (error <= STOP || (error <= ROUNDING && error > 0.5 * previous)) return true;
+    previous = error;
+    ws.iterations++;
+    assembleJacobian(system, ws, "linear");
+    if (!solveDense(ws.matrix, ws.step, system.size, system.size)) return false;
+    const beta = longestChange(system, ws);
+    const t = beta > 1e-3 ? Math.log1p(beta) / beta : 1;
+    for (let b = 0; b < system.size; b++) ws.y[b] += t * ws.step[b];
+  }
+  return false;
+}
+
+/** β = max_i |N_i·d|, the largest change of ln c along the step. */
+function longestChange(system: System, ws: Workspace): number {
+  let beta = 0;
+  for (let s = 0; s < system.gammaClass.length; s++) {
+    let v = 0;
+    for (let q = system.nStart[s]; q < system.nStart[s + 1]; q++) v += system.nValue[q] * ws.step[system.nColumn[q]];
+    if (Math.abs(v) > beta) beta = Math.abs(v);
+  }
+  return beta;
+}
