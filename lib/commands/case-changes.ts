@@ -7,7 +7,8 @@ import type { JobSpec } from "@/lib/schemas/job-spec";
 import type { Completion, Mark } from "./command";
 import type { LineProblem } from "./entry";
 import { closeOver, type Close } from "./close-facts";
-import { joined, nearestWord, type Word } from "./words";
+import { joined, type Word } from "./words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 export const ACTIVITY_MODELS = ["ideal", "guntelberg", "davies", "debye-huckel", "truesdell-jones"] as const;
 export const ORGANIC_MODELS = ["oliver-1983", "hruska-2003", "driscoll-1994"] as const;
@@ -172,7 +173,7 @@ const readPressure: Reader = (words, at) => {
   if (!value || !NUMBER.test(value.text)) return problemAt(words.slice(at, at + 2), "A pressure follows: for example pCO2 420 ppm, or pCO2 x10.");
   const unit = words[at + 2];
   if (!unit || !PRESSURE_UNITS.includes(unit.text)) {
-    return problemAt(unit && unit.text !== "," ? [unit] : [value], `A pressure needs its unit: ${["ppm", "uatm", "atm", "Pa", "kPa", "bar"].join(", ")}.`, unit && unit.text !== "," ? nearestWord(unit.text, PRESSURE_UNITS) ?? undefined : `${value.text} ppm`);
+    return problemAt(unit && unit.text !== "," ? [unit] : [value], `A pressure needs its unit: ${["ppm", "uatm", "atm", "Pa", "kPa", "bar"].join(", ")}.`, unit && unit.text !== "," ? nearestName(unit.text, PRESSURE_UNITS) ?? undefined : `${value.text} ppm`);
   }
   const pressure = `${value.text} ${unit.text}`;
   return { used: 3, change: { label: `pCO2 ${pressure}`, words: words.slice(at, at + 3), apply: (spec) => setPressure(spec.cases[0], pressure) } };
@@ -213,7 +214,7 @@ const readModel: Reader = (words, at) => {
 };
 
 const suggestion = (name: string, word: string, names: readonly string[]): string | undefined => {
-  const near = nearestWord(word, names);
+  const near = nearestName(word, names);
   return near ? `${name} ${near}` : undefined;
 };
 
@@ -279,7 +280,7 @@ export function readChanges(given: readonly Word[]): ReadChanges {
     let step: Step | null = null;
     for (const reader of READERS) if ((step = reader(words, at))) break;
     if (!step) {
-      const near = nearestWord(word.text, [...CHANGE_WORDS.map((each) => each.insert), ...ACTIVITY_MODELS, ...ORGANIC_MODELS, ...ANALYTES.map((each) => each.key)]);
+      const near = nearestName(word.text, [...CHANGE_WORDS.map((each) => each.insert), ...ACTIVITY_MODELS, ...ORGANIC_MODELS, ...ANALYTES.map((each) => each.key)]);
       step = problemAt([word], `“${word.text}” is not a change that can be tried.`, near ?? undefined);
     }
     if (step.problem) result.problems.push(step.problem);

@@ -5,7 +5,8 @@ import { AMBIENT_CO2, type Answered } from "./case-changes";
 import { closeOver } from "./close-facts";
 import type { Completion, Mark } from "./command";
 import type { LineProblem } from "./entry";
-import { joined, nearestWord, type Word } from "./words";
+import { joined, type Word } from "./words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 export interface RangeRequest {
   field: string;
@@ -52,7 +53,7 @@ export function readRange(words: readonly Word[]): ReadRange {
   const last = words[words.length - 1] ?? { text: "", start: 0, end: 0 };
   if (given.length === 0) return fail(last, `Which field? For example: range pCO2 200 to 20000 ppm. Fields: ${PLAIN_FIELDS.join(", ")}, any analyte, any solid (its saturation).`);
   const field = fieldOf(given[0].text);
-  if (!field) return fail(given[0], `“${given[0].text}” is not a field that can be varied.`, nearestWord(given[0].text, [...RANGE_FIELDS, ...SOLIDS.map((each) => each.name)]) ?? undefined);
+  if (!field) return fail(given[0], `“${given[0].text}” is not a field that can be varied.`, nearestName(given[0].text, [...RANGE_FIELDS, ...SOLIDS.map((each) => each.name)]) ?? undefined);
   const marks: Mark[] = [{ start: given[0].start, end: given[0].end, kind: "name", shown: field.includes("/") ? "saturation index" : undefined }];
   const rest = given.slice(1);
   const ends = readEnds(rest, field);
@@ -93,7 +94,7 @@ function readEnds(words: readonly Word[], field: string): { from: number; to: nu
   if (units.length === 2 && units[0] !== units[1]) return { problem: `Both ends in one unit, please: ${units[0]} or ${units[1]}.`, at: unitWord(), suggestion: units[0] };
   const unit = units[0] ?? FIELD_UNITS[field] ?? (field.includes("/") ? "" : "mg/L");
   const known = unitsOf(field);
-  if (field === "pCO2" && ![...known, "µatm", "μatm", "Pa", "bar"].includes(unit)) return { problem: `“${unit}” is not a unit of pressure.`, at: words.find((word) => word.text === unit), suggestion: nearestWord(unit, known) ?? "ppm" };
+  if (field === "pCO2" && ![...known, "µatm", "μatm", "Pa", "bar"].includes(unit)) return { problem: `“${unit}” is not a unit of pressure.`, at: words.find((word) => word.text === unit), suggestion: nearestName(unit, known) ?? "ppm" };
   if (from === to) return { problem: "Both ends are the same.", at: words[at - 1] };
   return { from, to, unit, used: at };
 }
@@ -106,7 +107,7 @@ function readOptions(words: readonly Word[], from: number, to: number, field: st
     if (/^log$/i.test(word.text)) scale = "log";
     else if (/^lin(ear)?$/i.test(word.text)) scale = "linear";
     else if (/^\d+$/.test(word.text)) points = Number(word.text);
-    else return { problem: `“${word.text}” does not belong to a range; a number of points, log or linear may follow.`, at: word, suggestion: nearestWord(word.text, ["log", "linear", "points"]) ?? undefined };
+    else return { problem: `“${word.text}” does not belong to a range; a number of points, log or linear may follow.`, at: word, suggestion: nearestName(word.text, ["log", "linear", "points"]) ?? undefined };
   }
   if (points < 2 || points > MOST_POINTS) return { problem: `Between 2 and ${MOST_POINTS} points; more belong in a job (edit, then submit).`, at: words.find((word) => /^\d+$/.test(word.text)) };
   if (scale === "log" && (from <= 0 || to <= 0)) return { problem: "A log scale needs both ends above zero.", at: words.find((word) => /^log$/i.test(word.text)), suggestion: "linear" };

@@ -6,7 +6,8 @@ import type { LineProblem } from "./entry";
 import { COMMANDS, findCommand } from "./registry";
 import { SOLVE_PATH, withStateReport } from "./solved-entries";
 import { completeWater } from "./complete-water";
-import { nearestWord, splitWords } from "./words";
+import { splitWords } from "./words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 export type ReadLine =
   | { kind: "empty"; problems: LineProblem[]; marks: Mark[] }
@@ -35,7 +36,7 @@ function waterProblems(water: ParsedLine, line: string, first: { start: number; 
   const problems: LineProblem[] = water.tokens.filter((token) => token.kind === "unknown" || token.problem !== undefined)
     .map((token) => ({ start: token.start, end: token.end, message: token.problem ?? `“${line.slice(token.start, token.end)}” is not known here.`, suggestion: token.suggestion }));
   const own = problems.find((each) => each.start === first.start);
-  const name = nearestWord(line.slice(first.start, first.end), COMMANDS.map((each) => each.name));
+  const name = nearestName(line.slice(first.start, first.end), COMMANDS.map((each) => each.name));
   // A line that begins with an unknown word is more likely a command mistyped than a water.
   if (own && name && !own.suggestion) own.suggestion = name;
   return problems;

@@ -35,29 +35,3 @@ export function joined(words: readonly Word[]): Word {
     end: words[words.length - 1]?.end ?? 0,
   };
 }
-
-/** The nearest of `names` within a third of the word's length in single edits (a swap of neighbours is one); null when none is near. */
-export function nearestWord(word: string, names: Iterable<string>): string | null {
-  const wanted = word.toLowerCase();
-  let best: string | null = null;
-  let bestDistance = Math.max(1, Math.floor(wanted.length / 3)) + 1;
-  for (const name of names) {
-    const distance = editDistance(wanted, name.toLowerCase());
-    if (distance < bestDistance) [best, bestDistance] = [name, distance];
-  }
-  return best;
-}
-
-function editDistance(a: string, b: string): number {
-  let before: number[] = [];
-  let last = Array.from({ length: b.length + 1 }, (_, j) => j);
-  for (let i = 1; i <= a.length; i++) {
-    const row = [i];
-    for (let j = 1; j <= b.length; j++) {
-      row[j] = Math.min(last[j] + 1, row[j - 1] + 1, last[j - 1] + (a[i - 1] === b[j - 1] ? 0 : 1));
-      if (i > 1 && j > 1 && a[i - 1] === b[j - 2] && a[i - 2] === b[j - 1]) row[j] = Math.min(row[j], before[j - 2] + 1);
-    }
-    [before, last] = [last, row];
-  }
-  return last[b.length];
-}

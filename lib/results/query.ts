@@ -2,7 +2,7 @@
 import { AppError, type Issue } from "@/lib/errors";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 import { FIXED_COLUMNS, type StoredColumn } from "./block";
-import { nearestName } from "./nearest-name";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 /** Where a column's cells come from: computed from the row index, or stored in the blocks. */
 export type ColumnPlace =

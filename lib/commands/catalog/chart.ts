@@ -1,6 +1,6 @@
 import { defineCommand } from "../command";
 import type { Entry } from "../entry";
-import { nearestWord } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 import { usualAncRange } from "../range";
 import { completeReference, isReference, takeEntry } from "../references";
 import { firstAnswered, isWaterEntry } from "../solved-entries";
@@ -31,7 +31,7 @@ export const chart = defineCommand<Arguments>({
     const y = names.find((name) => name.toLowerCase() === word.text.toLowerCase());
     if (y) return { args: { entry: found.entry, y }, problems: [], marks: [...found.marks, { start: word.start, end: word.end, kind: "name" }] };
     const message = names.length === 0 ? "A column can be chosen for a range only." : `“${word.text}” is not a column of entry ${found.entry.number}.`;
-    return { args: null, marks: found.marks, problems: [{ start: word.start, end: word.end, message, suggestion: nearestWord(word.text, names) ?? undefined }] };
+    return { args: null, marks: found.marks, problems: [{ start: word.start, end: word.end, message, suggestion: nearestName(word.text, names) ?? undefined }] };
   },
   complete(before, partial, view) {
     const entry = takeEntry(before, view, canChart, "water, range or job").entry;

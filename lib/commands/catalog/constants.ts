@@ -1,6 +1,7 @@
 import { SOLIDS, SPECIES } from "../named-constants";
 import { defineCommand } from "../command";
-import { joined, nearestWord } from "../words";
+import { joined } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 interface Arguments { name: string | null; temperature: number }
 
@@ -23,7 +24,7 @@ export const constants = defineCommand<Arguments>({
     if (temperature > 90) return { args: null, marks: [], problems: [{ start: last.start, end: last.end, message: "Between 0 and 90 °C." }] };
     const found = NAMES.find((each) => each.toLowerCase() === name.text.toLowerCase() || each.replace("^", "").toLowerCase() === name.text.toLowerCase());
     if (found) return { args: { name: found, temperature }, problems: [], marks: [{ start: name.start, end: name.end, kind: "name" }] };
-    return { args: null, marks: [], problems: [{ start: name.start, end: name.end, message: `“${name.text}” is not in the constants set.`, suggestion: nearestWord(name.text, NAMES) ?? undefined }] };
+    return { args: null, marks: [], problems: [{ start: name.start, end: name.end, message: `“${name.text}” is not in the constants set.`, suggestion: nearestName(name.text, NAMES) ?? undefined }] };
   },
   complete: (before, partial) => (before.length > 0 ? [] : NAMES.filter((name) => name.toLowerCase().startsWith(partial.toLowerCase()))
     .map((insert) => ({ insert, detail: SOLIDS.some((solid) => solid.name === insert) ? "solid" : "species" }))),

@@ -3,7 +3,8 @@ import { specOf, type Entry } from "../entry";
 import { csvOf, curlFor, pasteTableOf, pythonFor, tableOf } from "../export-entry";
 import { completeReference, isReference, takeEntry } from "../references";
 import { apiCallOf } from "../solved-entries";
-import { nearestWord, type Word } from "../words";
+import { type Word } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 type Form = "table" | "csv" | "curl" | "python" | "spec";
 interface Arguments { entry: Entry; form: Form }
@@ -21,7 +22,7 @@ function read(call: Call, view: ConsoleView, forms: readonly Form[], usual: Form
   const word = call.words.find((each) => !isReference(each.text) && !/^(as|,|entry)$/i.test(each.text));
   const form = word ? forms.find((each) => each === word.text.toLowerCase()) : usual;
   if (!form) {
-    return { args: null, marks: [], problems: [{ start: word!.start, end: word!.end, message: `“${word!.text}” is not a form; there are ${forms.join(", ")}.`, suggestion: nearestWord(word!.text, forms) ?? undefined }] };
+    return { args: null, marks: [], problems: [{ start: word!.start, end: word!.end, message: `“${word!.text}” is not a form; there are ${forms.join(", ")}.`, suggestion: nearestName(word!.text, forms) ?? undefined }] };
   }
   const found = takeEntry(call.words.filter((each) => isReference(each.text)), view, fits(form), needsTable(form) ? "entry with a table" : "entry with a request");
   const marks = [...found.marks, ...(word ? [{ start: word.start, end: word.end, kind: "name" as const }] : [])];

@@ -4,7 +4,7 @@ import type { Entry, LineProblem } from "../entry";
 import { curlFor, pythonFor } from "../export-entry";
 import { completeReference, findReference, isReference } from "../references";
 import { apiCallOf } from "../solved-entries";
-import { nearestWord } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 export const help = defineCommand<string | null>({
   name: "help",
@@ -19,7 +19,7 @@ export const help = defineCommand<string | null>({
     if (!word) return { args: null as string | null, problems: [], marks: [] };
     const name = view.commandNames.find((each) => each === word.text.toLowerCase());
     if (name) return { args: name, problems: [], marks: [{ start: word.start, end: word.end, kind: "command" }] };
-    const problem: LineProblem = { start: word.start, end: word.end, message: `There is no command “${word.text}”.`, suggestion: nearestWord(word.text, view.commandNames) ?? undefined };
+    const problem: LineProblem = { start: word.start, end: word.end, message: `There is no command “${word.text}”.`, suggestion: nearestName(word.text, view.commandNames) ?? undefined };
     return { args: null, problems: [problem], marks: [] };
   },
   complete: (before, partial, view) => (before.length > 0 ? [] : view.commandNames.filter((name) => name.startsWith(partial.toLowerCase())).map((insert) => ({ insert, detail: "command" }))),

@@ -1,6 +1,7 @@
 import { defineCommand, readNothing, type ConsoleView } from "../command";
 import type { LineProblem } from "../entry";
-import { joined, nearestWord } from "../words";
+import { joined } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 export const jobs = defineCommand<string | null>({
   name: "jobs",
@@ -43,7 +44,7 @@ export const openJob = defineCommand<{ id: string; title: string }>({
     // An id that this page has not seen yet is for the server to know.
     if (!found && /^job_\w{20}$/.test(name.text)) return { args: { id: name.text, title: name.text }, problems: [], marks: [] };
     if (found) return { args: found, problems: [], marks: [{ ...place, kind: "name", shown: found.status }] };
-    const near = nearestWord(name.text, view.jobs.map((job) => job.title));
+    const near = nearestName(name.text, view.jobs.map((job) => job.title));
     const problem: LineProblem = { ...place, message: name.text ? `There is no job “${name.text}”; jobs lists them.` : "There is no job yet.", suggestion: near ?? undefined };
     return { args: null, problems: [problem], marks: [] };
   },

@@ -2,7 +2,7 @@
 import { defineCommand, readNothing } from "../command";
 import type { Entry, LineProblem } from "../entry";
 import { completeReference, findReference, isReference } from "../references";
-import { nearestWord } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 export interface Page { word: string; path: string; title: string; role?: "administrator" }
 
@@ -35,7 +35,7 @@ export const go = defineCommand<Page>({
     if (!word) return { args: null, marks: [], problems: [{ start: call.start, end: call.start, message: `Where to? ${pages.map((page) => page.word).join(", ")}.` }] };
     const page = pages.find((each) => each.word === word.text.toLowerCase());
     if (page) return { args: page, problems: [], marks: [{ start: word.start, end: word.end, kind: "name", shown: page.title }] };
-    return { args: null, marks: [], problems: [{ start: word.start, end: word.end, message: `There is no page “${word.text}”.`, suggestion: nearestWord(word.text, pages.map((each) => each.word)) ?? undefined }] };
+    return { args: null, marks: [], problems: [{ start: word.start, end: word.end, message: `There is no page “${word.text}”.`, suggestion: nearestName(word.text, pages.map((each) => each.word)) ?? undefined }] };
   },
   complete: (before, partial, view) => (before.length > 0 ? [] : PAGES
     .filter((page) => (!page.role || page.role === view.role) && page.word.startsWith(partial.toLowerCase()))
@@ -94,7 +94,7 @@ export const theme = defineCommand<(typeof THEMES)[number]>({
     const chosen = THEMES.find((each) => each === word?.text.toLowerCase());
     if (chosen) return { args: chosen, problems: [], marks: [{ start: word.start, end: word.end, kind: "name" }] };
     const place = word ?? { start: call.start, end: call.start };
-    return { args: null, marks: [], problems: [{ start: place.start, end: place.end, message: "dark, light or system.", suggestion: word ? nearestWord(word.text, THEMES) ?? undefined : undefined }] };
+    return { args: null, marks: [], problems: [{ start: place.start, end: place.end, message: "dark, light or system.", suggestion: word ? nearestName(word.text, THEMES) ?? undefined : undefined }] };
   },
   complete: (before, partial) => (before.length > 0 ? [] : THEMES.filter((each) => each.startsWith(partial.toLowerCase())).map((insert) => ({ insert, detail: "" }))),
   perform: (chosen, host) => host.chooseTheme(chosen),

@@ -2,7 +2,8 @@ import type { JobSpec } from "@/lib/schemas/job-spec";
 import { defineCommand, type ConsoleView } from "../command";
 import { specOf, type Entry, type LineProblem } from "../entry";
 import { completeReference, isReference, takeEntry } from "../references";
-import { joined, nearestWord } from "../words";
+import { joined } from "../words";
+import { nearestName } from "@/lib/schemas/nearest-name";
 
 interface Arguments { entry: Entry; set: ConsoleView["sets"][number] | null }
 
@@ -37,7 +38,7 @@ export const submit = defineCommand<Arguments>({
       set = view.sets.find((each) => each.id === name.text || each.name.toLowerCase() === name.text.toLowerCase()) ?? null;
       if (set) marks.push({ start: name.start, end: name.end, kind: "name", shown: `${set.waterCount} waters` });
       else {
-        const near = nearestWord(name.text, view.sets.map((each) => each.name)) ?? view.sets.find((each) => each.name.toLowerCase().includes(name.text.toLowerCase()))?.name;
+        const near = nearestName(name.text, view.sets.map((each) => each.name)) ?? view.sets.find((each) => each.name.toLowerCase().includes(name.text.toLowerCase()))?.name;
         problems.push({ start: name.start, end: name.end, message: `There is no sample set “${name.text}”; sets lists them.`, suggestion: near && `"${near}"` });
       }
     } else if (found.rest.length > 0) problems.push({ ...joined(found.rest), message: "Over which sample set? Its name or id follows." });

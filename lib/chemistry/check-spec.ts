@@ -1,0 +1,109 @@
+/** The one check of a job spec: by the API before a job is taken, by the editor while it is typed, by the console. */
+import { checkAxes } from "@/lib/chemistry/check-axes";
+import { checkCases } from "@/lib/chemistry/check-cases";
+import { checkReport } from "@/lib/chemistry/check-report";
+import { checkRows } from "@/lib/chemistry/check-rows";
+import { ROW_FIELDS } from "@/lib/chemistry/fields";
+import { issuesOf } from "@/lib/chemistry/spec-issues";
+import { splitUnit, unitScale } from "@/lib/chemistry/units";
+import type { Issue } from "@/lib/errors";
+import { type JobSpec, jobSpecJsonSchema, jobSpecSchema, WATERS_PER_SPEC } from "@/lib/schemas/job-spec";
+import { nearestName } from "@/lib/schemas/nearest-name";
+
+/** Faults answered at once; a document with more has the same one many times over. */
+export const MOST_ISSUES = 100;
+
+export interface CheckedSpec {
+  /** The document as a spec; null where its shape is no spec's. It may still have issues. */
+  spec: JobSpec | null;
+  issues: Issue[];
+}
+
+/**
+ * Finds every fault that would refuse the document, each with JSON Pointer, value and remedy, at most MOST_ISSUES of them. Faults of one
+ * row's values are not among them: those make the row invalid. Pure, and never throws, whatever it is given.
+ */
+export function checkSpec(document: unknown): CheckedSpec {
+  const { head, rows } = detachRows(document);
+  const parsed = jobSpecSchema.safeParse(head);
+  const issues = parsed.success ? [] : issuesOf(parsed.error, head, (path) => keysAt(path.map(String)));
+  const waters = watersOf(document);
+  const units = unitsOf(waters);
+  if (waters) issues.push(...watersIssues(waters, rows));
+  if (rows) issues.push(...checkRows(rows.slice(0, WATERS_PER_SPEC), units, MOST_ISSUES));
+  if (!parsed.success) return { spec: null, issues: limit(issues) };
+  const { cases, vary, report } = parsed.data;
+  issues.push(...unitIssues(units), ...checkCases(cases, units), ...checkAxes(vary ?? [], cases, units), ...checkReport(report ?? [], cases));
+  const spec = rows ? { ...parsed.data, waters: { ...parsed.data.waters, rows: rows as JobSpec["waters"]["rows"] } } : parsed.data;
+  return { spec, issues: limit(issues) };
+}
+
+const limit = (issues: Issue[]): Issue[] => issues.slice(0, MOST_ISSUES);
+
+type Plain = Record<string, unknown>;
+const isObject = (value: unknown): value is Plain => typeof value === "object" && value !== null && !Array.isArray(value);
+
+function watersOf(document: unknown): Plain | null {
+  return isObject(document) && isObject(document.waters) ? document.waters : null;
+}
+
+/** The document without its rows, which are looked at by a loop: a schema's pass over 100,000 of them takes seconds. */
+function detachRows(document: unknown): { head: unknown; rows: unknown[] | null } {
+  const waters = watersOf(document);
+  if (!waters || !Array.isArray(waters.rows)) return { head: document, rows: null };
+  const rest = Object.fromEntries(Object.entries(waters).filter(([key]) => key !== "rows"));
+  return { head: { ...(document as Plain), waters: rest }, rows: waters.rows };
+}
+
+/** Units that are texts; anything else is the schema's to name. */
+function unitsOf(waters: Plain | null): Record<string, string> {
+  if (!waters || !isObject(waters.units)) return {};
+  return Object.fromEntries(Object.entries(waters.units).filter((entry): entry is [string, string] => typeof entry[1] === "string"));
+}
+
+function watersIssues(waters: Plain, rows: unknown[] | null): Issue[] {
+  const pointer = "/waters";
+  const hasSet = waters.set !== undefined;
+  const hasRows = waters.rows !== undefined;
+  if (hasSet && hasRows) return [{ pointer, code: "contradiction", message: "Both a sample set and rows are given.", remedy: "Keep one of set and rows." }];
+  if (!hasSet && !hasRows) return [{ pointer, code: "missing", message: "There are no waters.", remedy: "Add \"set\" or \"rows\"." }];
+  if (hasSet && typeof waters.set === "string" && !/^set_[0-9A-Za-z]*(@\d{1,9})?$/.test(waters.set) && waters.set !== "set_…") {
+    return [{ pointer: "/waters/set", code: "unreadable-reference", message: "This does not name a sample set.", value: waters.set.slice(0, 80), remedy: "Write set_… or set_…@3." }];
+  }
+  if (rows && rows.length === 0) return [{ pointer: "/waters/rows", code: "out-of-range", message: "There must be at least 1 water.", remedy: "Add one, or name a sample set." }];
+  if (rows && rows.length > WATERS_PER_SPEC) {
+    return [{ pointer: "/waters/rows", code: "too-many-waters", message: `There are ${rows.length} waters; a spec holds up to ${WATERS_PER_SPEC}.`, value: String(rows.length), remedy: "Upload them as a sample set and name it, or send several jobs." }];
+  }
+  return [];
+}
+
+function unitIssues(units: Record<string, string>): Issue[] {
+  return Object.entries(units).flatMap(([key, text]): Issue[] => {
+    const pointer = `/waters/units/${key.replaceAll("~", "~0").replaceAll("/", "~1")}`;
+    const field = ROW_FIELDS.get(key);
+    if (!field) {
+      const nearest = nearestName(key, ROW_FIELDS.keys());
+      return [{ pointer, code: "unknown-column", message: `No column is called “${key.slice(0, 80)}”.`, value: key.slice(0, 80), remedy: nearest ? `Did you mean “${nearest}”?` : `Columns: ${[...ROW_FIELDS.keys()].join(", ")}.` }];
+    }
+    const { unit, as } = splitUnit(text);
+    const scale = unitScale(field, unit, as);
+    return "message" in scale ? [{ pointer, code: "unknown-unit", message: scale.message, value: text, remedy: scale.remedy }] : [];
+  });
+}
+
+interface SchemaNode { properties?: Record<string, SchemaNode>; items?: SchemaNode; additionalProperties?: SchemaNode | boolean; propertyNames?: { enum?: string[] }; anyOf?: SchemaNode[] }
+
+/** Keys that the schema knows at a path, for “did you mean”. */
+function keysAt(path: readonly string[]): string[] {
+  let nodes: SchemaNode[] = [jobSpecJsonSchema() as SchemaNode];
+  const open = (all: SchemaNode[]): SchemaNode[] => all.flatMap((node) => [node, ...open(node.anyOf ?? [])]);
+  for (const part of path) {
+    nodes = open(nodes).flatMap((node) => {
+      const own = node.properties && Object.hasOwn(node.properties, part) ? node.properties[part] : null;
+      if (own) return [own];
+      if (/^\d+$/.test(part) && node.items) return [node.items];
+      return typeof node.additionalProperties === "object" ? [node.additionalProperties] : [];
+    });
+  }
+  return [...new Set(open(nodes).flatMap((node) => [...Object.keys(node.properties ?? {}), ...(node.propertyNames?.enum ?? [])]))];
+}

@@ -1,0 +1,50 @@
+/** A row from words and units to numbers in base units, with the faults of its values. */
+import { ANALYTES } from "@/lib/chemistry/data";
+import { ROW_FIELDS } from "@/lib/chemistry/fields";
+import { isProblem, type Quantity, readQuantity, shorten } from "@/lib/chemistry/quantity";
+import type { ResolvedWater, RowFault } from "@/lib/chemistry/types";
+
+export type BelowLimit = "half" | "zero" | "limit";
+const COUNTED: Record<BelowLimit, number> = { half: 0.5, zero: 0, limit: 1 };
+
+const TOTALS: ReadonlySet<string> = new Set(ANALYTES.filter(({ kind }) => kind === "total").map(({ key }) => key));
+const PLAIN = new Set(["temperature", "pH", "pHTemperature", "altitude", "conductivity", "alkalinity", "ANC", "DIC", "DOC"]);
+/** Amounts that may lie below zero. */
+const SIGNED = new Set(["alkalinity", "ANC"]);
+
+const textOf = (value: unknown): string | null => (typeof value === "string" ? value : null);
+
+/** @param index place of the row, which names a water without an id. */
+export function resolveWater(row: Readonly<Record<string, unknown>>, index: number, units: Readonly<Record<string, string>>, belowLimit: BelowLimit): ResolvedWater {
+  const water: ResolvedWater = {
+    id: row.id === undefined || row.id === null || row.id === "" ? `W${index + 1}` : String(row.id), site: textOf(row.site), date: textOf(row.date),
+    temperature: null, pH: null, pHTemperature: null, altitude: null, pressureAtm: null, conductivity: null,
+    totals: {}, alkalinity: null, ANC: null, DIC: null, DOC: null, pCO2: null, aluminiumFractionGiven: false, faults: [], warnings: [],
+  };
+  for (const key of Object.keys(row)) {
+    const field = ROW_FIELDS.get(key);
+    const raw = row[key];
+    if (!field || raw === null || raw === undefined) continue;
+    const read = readQuantity(raw, field, Object.hasOwn(units, key) ? units[key] : null);
+    const fault = isProblem(read) ? { code: read.code, column: key, message: `${read.message} ${read.remedy}` } : amountFault(read, key, raw);
+    if (fault) water.faults.push(fault);
+    else put(water, key, read as Quantity, belowLimit);
+  }
+  return water;
+}
+
+function amountFault(read: Quantity, key: string, raw: unknown): RowFault | null {
+  const isAmount = TOTALS.has(key) || key === "DIC" || key === "DOC" || key === "conductivity";
+  if (isAmount && !SIGNED.has(key) && read.base < 0) return { code: "negative-amount", column: key, message: `${key} is negative (${shorten(raw)}); amounts are 0 or more` };
+  if (key === "pCO2" && !(read.base > 0)) return { code: "out-of-range", column: key, message: `pCO2 is not above 0 (${shorten(raw)})` };
+  return null;
+}
+
+function put(water: ResolvedWater, key: string, read: Quantity, belowLimit: BelowLimit): void {
+  const base = read.isBelow ? read.base * COUNTED[belowLimit] : read.base;
+  if (TOTALS.has(key)) water.totals[key] = base;
+  else if (PLAIN.has(key)) water[key as "pH"] = base;
+  else if (key === "pressure") water.pressureAtm = base;
+  else if (key === "pCO2") water.pCO2 = read.isDryFraction ? { dryFraction: base } : { atm: base };
+  if (key === "Al" && read.fraction !== null) water.aluminiumFractionGiven = true;
+}
