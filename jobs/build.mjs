@@ -5,7 +5,7 @@
 import { existsSync, readdirSync } from "node:fs";
 import path from "node:path";
 import { fileURLToPath } from "node:url";
-import { build } from "esbuild";
+import { build, context } from "esbuild";
 
 const root = path.resolve(import.meta.dirname, "..");
 
@@ -20,7 +20,19 @@ export function entryPoints() {
  * @param {{ outdir?: string, only?: string[], alias?: Record<string, string> }} options for tests: `only` names the
  * entries to build, `alias` puts stand-ins in the place of modules
  */
-export async function buildJobs({ outdir = path.join(root, ".build"), only = undefined, alias = {} } = {}) {
+export async function buildJobs(options = {}) {
+  await build(buildOptions(options));
+}
+
+/** Builds into .build/ again whenever a source changes, and says so each time after the first. */
+export async function watchJobs(onRebuilt) {
+  let builds = 0;
+  const plugin = { name: "rebuilt", setup(builder) { builder.onEnd(({ errors }) => { if (errors.length === 0 && builds++ > 0) onRebuilt(); }); } };
+  const options = buildOptions({});
+  await (await context({ ...options, plugins: [...options.plugins, plugin] })).watch();
+}
+
+function buildOptions({ outdir = path.join(root, ".build"), only = undefined, alias = {} }) {
   const standIns = {
     name: "stand-ins",
     setup(builder) {
@@ -29,11 +41,11 @@ export async function buildJobs({ outdir = path.join(root, ".build"), only = und
       }
     },
   };
-  await build({
+  return {
     entryPoints: entryPoints().filter((entry) => !only || only.includes(path.basename(entry, ".ts"))), outdir, outExtension: { ".js": ".mjs" }, entryNames: "[name]",
     bundle: true, platform: "node", target: "node20", format: "esm", packages: "external", sourcemap: true,
     absWorkingDir: root, tsconfig: path.join(root, "tsconfig.json"), logLevel: "warning", plugins: [standIns],
-  });
+  };
 }
 
 if (process.argv[1] === fileURLToPath(import.meta.url)) await buildJobs();

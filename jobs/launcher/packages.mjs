@@ -1,8 +1,8 @@
 /** Packages from the lock file, installed once for each state of the lock file. */
-import { spawn } from "node:child_process";
 import { createHash } from "node:crypto";
 import { readFileSync, writeFileSync } from "node:fs";
 import path from "node:path";
+import { captured } from "./captured.mjs";
 import { readIfThere, readJson } from "./files.mjs";
 import { say, StartError } from "./say.mjs";
 import { ROOT } from "./settings.mjs";
@@ -27,16 +27,4 @@ export async function ensurePackages() {
     if (code !== 0) throw new StartError(`npm ci failed:\n${output.trim().split("\n").slice(-15).join("\n")}`);
   }
   writeFileSync(STAMP, `${hash}\n`);
-}
-
-/** Runs a program to its end in the root; its output is kept, not shown. */
-export function captured(program, args, env = {}) {
-  return new Promise((resolve, reject) => {
-    const child = spawn(program, args, { cwd: ROOT, env: { ...process.env, ...env }, stdio: ["ignore", "pipe", "pipe"] });
-    let output = "";
-    child.stdout.on("data", (data) => { output += data; });
-    child.stderr.on("data", (data) => { output += data; });
-    child.once("error", (error) => reject(error.code === "ENOENT" ? new StartError(`${program} is not installed.`) : error));
-    child.once("close", (code) => resolve({ code, output }));
-  });
 }

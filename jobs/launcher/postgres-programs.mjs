@@ -2,7 +2,7 @@
 import { execFileSync } from "node:child_process";
 import { existsSync, mkdirSync, readdirSync, writeFileSync } from "node:fs";
 import path from "node:path";
-import { captured } from "./packages.mjs";
+import { captured } from "./captured.mjs";
 import { say, StartError } from "./say.mjs";
 
 const OLDEST = 13;

@@ -29,13 +29,29 @@ export function checkSpec(document: unknown): CheckedSpec {
   const issues = parsed.success ? [] : issuesOf(parsed.error, head, (path) => keysAt(path.map(String)));
   const waters = watersOf(document);
   const units = unitsOf(waters);
-  if (waters) issues.push(...watersIssues(waters, rows));
+  const wrongUnits = unitIssues(units);
+  // A wrong default unit is one fault, not one for each of its rows.
+  for (const { pointer } of wrongUnits) delete units[pointer.slice("/waters/units/".length)];
+  if (waters) issues.push(...watersIssues(waters, rows), ...wrongUnits);
   if (rows) issues.push(...checkRows(rows.slice(0, WATERS_PER_SPEC), units, MOST_ISSUES));
+  issues.push(...partIssues(head, units));
   if (!parsed.success) return { spec: null, issues: limit(issues) };
-  const { cases, vary, report } = parsed.data;
-  issues.push(...unitIssues(units), ...checkCases(cases, units), ...checkAxes(vary ?? [], cases, units), ...checkReport(report ?? [], cases));
   const spec = rows ? { ...parsed.data, waters: { ...parsed.data.waters, rows: rows as JobSpec["waters"]["rows"] } } : parsed.data;
   return { spec, issues: limit(issues) };
+}
+
+/** Faults of cases, axes and report beyond their shape; each part is looked at though another one is no good. */
+function partIssues(head: unknown, units: Record<string, string>): Issue[] {
+  if (!isObject(head)) return [];
+  const { cases: casesPart, vary: varyPart, report: reportPart } = jobSpecSchema.shape;
+  const cases = casesPart.safeParse(head.cases);
+  const vary = varyPart.safeParse(head.vary);
+  const report = reportPart.safeParse(head.report);
+  return [
+    ...(cases.success ? checkCases(cases.data, units) : []),
+    ...(cases.success && vary.success ? checkAxes(vary.data ?? [], cases.data, units) : []),
+    ...(report.success ? checkReport(report.data ?? [], cases.success ? cases.data : null) : []),
+  ];
 }
 
 const limit = (issues: Issue[]): Issue[] => issues.slice(0, MOST_ISSUES);

@@ -16,7 +16,7 @@ const bent = (bend: (spec: Rows) => void): Rows => {
   return spec;
 };
 async function issuesOf(path: string, spec: unknown): Promise<Issue[]> {
-  const problem = await jsonOf<Problem>(await api("POST", path, { token, body: spec }), 422);
+  const problem = await jsonOf<Problem>(await api("POST", path, { token, body: JSON.stringify(spec), headers: { "content-type": "application/json" } }), 422);
   expect(problem.type).toBe("/docs/errors#invalid-spec");
   return problem.errors ?? [];
 }
@@ -77,7 +77,7 @@ describe.each(["/solve", "/jobs"])("POST %s", (path) => {
   test("broken JSON is 400 with line, column and pointer", async () => {
     const problem = await jsonOf<Problem>(await api("POST", path, { token, body: '{\n "spec": 1,\n "cases": [ {"name": "a", } ]\n}', headers: { "content-type": "application/json" } }), 400);
     expect(problem.errors?.[0]).toMatchObject({ pointer: "/cases/0", code: "json-syntax" });
-    expect(problem.detail).toContain("line 3, column 26");
+    expect(problem.detail).toContain("line 3, column 27");
   });
 
   const MEGABYTES = 20 * 1024 * 1024;

@@ -1,9 +1,7 @@
-import path from "node:path";
-import { drizzle } from "drizzle-orm/node-postgres";
-import { migrate } from "drizzle-orm/node-postgres/migrator";
 import pg from "pg";
 import { vi } from "vitest";
 import { closeDb } from "@/db/client";
+import { migrateDatabase } from "@/db/migrate";
 import { prepareQueues } from "@/jobs/queue";
 import { randomBase62 } from "@/lib/ids";
 import { closeEventHub } from "@/lib/services/events/subscribe-job-events";
@@ -26,9 +24,7 @@ export async function openQueueDatabase(): Promise<{ url: string; drop: () => Pr
   await server.query(`create database ${name}`);
   const url = Object.assign(base, { pathname: `/${name}` }).href;
   vi.stubEnv("DATABASE_URL", url);
-  const pool = new pg.Pool({ connectionString: url, max: 1 });
-  await migrate(drizzle(pool), { migrationsFolder: path.resolve(import.meta.dirname, "../../drizzle") });
-  await pool.end();
+  await migrateDatabase(url);
   await prepareQueues();
   return {
     url,

@@ -12,11 +12,10 @@ import type { JobRow } from "./row";
 export async function presentJobs(rows: readonly JobRow[], on: Db | Tx = db()): Promise<Job[]> {
   if (rows.length === 0) return [];
   const setIds = [...new Set(rows.flatMap((row) => row.setId ?? []))];
-  const [owners, sets, places] = await Promise.all([
-    on.select({ id: appUser.id, name: appUser.name }).from(appUser).where(inArray(appUser.id, [...new Set(rows.map((row) => row.ownerId))])),
-    setIds.length === 0 ? [] : on.select({ id: sampleSet.id, name: sampleSet.name }).from(sampleSet).where(inArray(sampleSet.id, setIds)),
-    queuePlaces(rows.filter((row) => row.status === "queued" || row.status === "running").map((row) => row.id), on),
-  ]);
+  // One after the other: a transaction's connection takes one query at a time.
+  const owners = await on.select({ id: appUser.id, name: appUser.name }).from(appUser).where(inArray(appUser.id, [...new Set(rows.map((row) => row.ownerId))]));
+  const sets = setIds.length === 0 ? [] : await on.select({ id: sampleSet.id, name: sampleSet.name }).from(sampleSet).where(inArray(sampleSet.id, setIds));
+  const places = await queuePlaces(rows.filter((row) => row.status === "queued" || row.status === "running").map((row) => row.id), on);
   const ownerNames = new Map(owners.map((owner) => [owner.id, owner.name]));
   const setNames = new Map(sets.map((set) => [set.id, set.name]));
   return rows.map((row) => ({

@@ -1,0 +1,25 @@
+import path from "node:path";
+import { defineConfig } from "vitest/config";
+
+/** Groups run one after the other: what measures time or shares a database must not run beside something else. */
+const group = (name: string, groupOrder: number, options: Record<string, unknown>) => ({
+  extends: true as const,
+  test: { name, include: [`tests/${name}/**/*.test.ts`], sequence: { groupOrder }, ...options },
+});
+const ALONE = { fileParallelism: false, maxWorkers: 1 };
+
+export default defineConfig({
+  resolve: { alias: { "@": path.resolve(import.meta.dirname) } },
+  test: {
+    pool: "forks",
+    projects: [
+      group("unit", 1, {}),
+      group("screen", 1, { include: ["tests/unit/**/*.test.tsx"], environment: "jsdom" }),
+      group("property", 1, { testTimeout: 60_000 }),
+      group("outside", 1, { testTimeout: 120_000 }),
+      group("integration", 2, { ...ALONE, testTimeout: 30_000, hookTimeout: 60_000, globalSetup: ["tests/helpers/throw-away-server.mjs"] }),
+      group("api", 3, { ...ALONE, testTimeout: 30_000, hookTimeout: 60_000, globalSetup: ["tests/helpers/throw-away-product.mjs"] }),
+      group("e2e", 4, { ...ALONE, testTimeout: 60_000, hookTimeout: 90_000, globalSetup: ["tests/helpers/throw-away-product.mjs"] }),
+    ],
+  },
+});
