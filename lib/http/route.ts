@@ -45,7 +45,8 @@ export interface RouteContext<S extends RouteScope, Q, B> {
   signal: AbortSignal;
 }
 
-type Params = { params: Promise<Record<string, string>> };
+/** Next types the parameters of each address by themselves; here they are names with texts. */
+type Params = { params: Promise<unknown> };
 export type RouteHandler = ((request: Request, context?: Params) => Promise<Response>) & { scope?: RouteScope };
 
 const WRITES = new Set(["POST", "PUT", "PATCH", "DELETE"]);
@@ -62,7 +63,7 @@ export function route<S extends RouteScope, Q = Record<string, never>, B = undef
       const actor = await admit(options, request, requestId, headers);
       const query = readQuery(options.query, request);
       const { body, raw } = await readInput(options, request);
-      const params = (await context?.params) ?? {};
+      const params = ((await context?.params) ?? {}) as Record<string, string>;
       const result = await handler({
         request, actor: actor as RouteContext<S, Q, B>["actor"], params, query, body, raw, requestId, signal: request.signal,
       });
