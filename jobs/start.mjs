@@ -67,7 +67,8 @@ function makeServices(settings, env) {
   const worker = (name, lane, threads, nice) =>
     new Service({ name, args: [path.join(ROOT, ".build/worker.mjs"), "--lane", lane, "--threads", String(threads)], env, nice, stopMs: WORKER_STOP_MS, onGiveUp, onChange });
   const web = new Service({
-    name: "The web server", env, stopMs: WEB_STOP_MS, onGiveUp, onChange,
+    // Next's banner would stand below the last lines of a start; what goes wrong is on stderr.
+    name: "The web server", env, isQuiet: !settings.isDev, stopMs: WEB_STOP_MS, onGiveUp, onChange,
     args: ["node_modules/next/dist/bin/next", settings.isDev ? "dev" : "start", "-H", settings.host, "-p", String(settings.port)],
   });
   const batch = Array.from({ length: settings.workers }, (_, index) => worker(`Batch worker ${index + 1}`, "batch", os.availableParallelism(), 10));
@@ -109,7 +110,7 @@ async function main() {
   const env = {
     DATABASE_URL: database.url, TUFA_DATABASE: database.kind, TUFA_DATA_DIR: settings.dataDir, NEXTAUTH_SECRET: sessionSecret(settings.dataDir),
     HOST: settings.host, PORT: String(settings.port), TUFA_DIST_DIR: settings.distDir, NEXT_TELEMETRY_DISABLED: "1",
-    NODE_ENV: settings.isDev ? "development" : "production",
+    NODE_ENV: settings.isDev ? "development" : "production", TUFA_LOG: settings.log,
   };
   await (settings.isDev ? buildBundles() : buildProduct(settings.distDir, env));
   const { hasDemo } = await prepareDatabase(database, settings, env);

@@ -100,6 +100,7 @@ export function CommandPalette({ me }: { me: Pick<Me, "id" | "role"> }) {
   }, []);
 
   const items = useMemo(() => paletteItems(me, jobs, sets), [me, jobs, sets]);
+  // eslint-disable-next-line react-hooks/purity -- what was used lately ranks by its age now; minutes make no difference
   const ranked = useMemo(() => rankItems(items, typed, recent, Date.now()), [items, typed, recent]);
   const groups = useMemo(() => grouped(ranked), [ranked]);
   useEffect(() => { setValue(groups[0]?.[1][0].id ?? ""); }, [groups]);

@@ -35,6 +35,8 @@ export function readSettings() {
     databaseUrl: valueOf("DATABASE_URL"),
     workers: wholeNumber("WORKERS", 1, 1, 256),
     distDir: valueOf("TUFA_DIST_DIR") ?? ".next",
+    // The last lines of a start are for people: the address and the accounts, not the workers' greetings.
+    log: valueOf("TUFA_LOG") ?? "warn",
     isDev: process.argv.includes("--dev"),
   };
 }

@@ -19,15 +19,15 @@ export class Service {
   #isStopping = false;
   #quickDeaths = 0;
 
-  /** @param {{ name: string, args: string[], env: Record<string, string | undefined>, nice?: number, stopMs: number, onGiveUp: (message: string) => void, onChange?: () => void }} options */
+  /** @param {{ name: string, args: string[], env: Record<string, string | undefined>, nice?: number, isQuiet?: boolean, stopMs: number, onGiveUp: (message: string) => void, onChange?: () => void }} options */
   constructor(options) { this.options = options; }
 
   get pid() { return this.#child?.pid ?? null; }
 
   start() {
-    const { name, args, env, nice, onChange } = this.options;
+    const { name, args, env, nice, isQuiet, onChange } = this.options;
     const command = nice ? ["nice", "-n", String(nice), process.execPath] : [process.execPath];
-    const child = spawn(command[0], [...command.slice(1), ...args], { cwd: ROOT, env: { ...process.env, ...env }, stdio: ["ignore", "inherit", "inherit"] });
+    const child = spawn(command[0], [...command.slice(1), ...args], { cwd: ROOT, env: { ...process.env, ...env }, stdio: ["ignore", isQuiet ? "ignore" : "inherit", "inherit"] });
     const started = Date.now();
     this.#child = child;
     let isOver = false;
