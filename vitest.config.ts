@@ -6,7 +6,10 @@ const group = (name: string, groupOrder: number, options: Record<string, unknown
   extends: true as const,
   test: { name, include: [`tests/${name}/**/*.test.ts`], sequence: { groupOrder }, ...options },
 });
+/** Files of tests/api that speak to a running product; the others call the route handlers in their own process. */
+const OVER_HTTP = ["http", "readme", "rhone"].map((name) => `tests/api/${name}.test.ts`);
 const ALONE = { fileParallelism: false, maxWorkers: 1 };
+const PRODUCT = { globalSetup: ["tests/helpers/throw-away-product.mjs"], setupFiles: ["tests/helpers/use-product-database.ts"] };
 
 export default defineConfig({
   resolve: { alias: { "@": path.resolve(import.meta.dirname) } },
@@ -18,8 +21,9 @@ export default defineConfig({
       group("property", 1, { testTimeout: 60_000 }),
       group("outside", 1, { testTimeout: 120_000 }),
       group("integration", 2, { ...ALONE, testTimeout: 30_000, hookTimeout: 60_000, globalSetup: ["tests/helpers/throw-away-server.mjs"] }),
-      group("api", 3, { ...ALONE, testTimeout: 30_000, hookTimeout: 60_000, globalSetup: ["tests/helpers/throw-away-product.mjs"] }),
-      group("e2e", 4, { ...ALONE, testTimeout: 60_000, hookTimeout: 90_000, globalSetup: ["tests/helpers/throw-away-product.mjs"] }),
+      group("api", 3, { ...ALONE, exclude: OVER_HTTP, testTimeout: 30_000, hookTimeout: 60_000, globalSetup: ["tests/helpers/throw-away-api-database.mjs"], setupFiles: ["tests/helpers/use-api-database.ts"] }),
+      group("product", 4, { ...ALONE, include: OVER_HTTP, testTimeout: 30_000, hookTimeout: 60_000, ...PRODUCT }),
+      group("e2e", 5, { ...ALONE, testTimeout: 60_000, hookTimeout: 90_000, ...PRODUCT }),
     ],
   },
 });

@@ -25,7 +25,8 @@ let parsed: Env | undefined;
 /** The environment, parsed once. Throws with every faulty name listed. */
 export function env(): Env {
   if (!parsed) {
-    const result = shape.safeParse(process.env);
+    // `WORKERS= npm start` means that it is not set, as everywhere in a shell.
+    const result = shape.safeParse(Object.fromEntries(Object.entries(process.env).filter(([, value]) => value !== "")));
     if (!result.success) {
       throw new Error("Environment: " + result.error.issues.map((i) => `${i.path.join(".")}: ${i.message}`).join("; "));
     }

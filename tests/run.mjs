@@ -20,8 +20,8 @@ const PROGRAMS = [
   { names: ["python3"], debian: "python3", what: "Python 3, for the README's examples" },
   { names: ["curl"], debian: "curl", what: "curl, for the README's examples" },
 ];
-const SUITES_IN_PROCESS = ["unit", "screen", "property", "outside", "integration"];
-const SUITES_OVER_HTTP = ["api", "e2e"];
+const SUITES_IN_PROCESS = ["unit", "screen", "property", "outside", "integration", "api"];
+const SUITES_OVER_HTTP = ["product", "e2e"];
 
 const total = { passed: 0, failed: 0 };
 let dataDir = null;
@@ -96,7 +96,7 @@ async function runAll() {
   await runSuites(SUITES_IN_PROCESS, { TUFA_TEST_SERVER: serverUrl(dataDir), TUFA_LOG: "warn" });
   if (!product) return;
   step(SUITES_OVER_HTTP.join(", "));
-  await runSuites(SUITES_OVER_HTTP, { ...productEnv(dataDir), TUFA_TEST_URL: product.address, TUFA_DATA_DIR: dataDir, TUFA_LOG: "warn" });
+  await runSuites(SUITES_OVER_HTTP, { ...productEnv(dataDir, product.address), TUFA_LOG: "warn" });
   step("end");
   const code = await product.stop();
   count("the product stops cleanly", code === 0, product.output());

@@ -2,7 +2,7 @@
 import { memo, useMemo } from "react";
 import type { EntryActions } from "./entry-view";
 import { firstAnswered } from "@/lib/commands/solved-entries";
-import { CurveChart } from "./curve-chart";
+import { CurveChart } from "@/components/charts/curve-chart";
 import { FormulaText } from "@/components/ui/formula-text";
 import { axisColumn, curveColumns, curvesOf, fieldLabel, isLog, unitFactor, unitOf, type Grid } from "./grid-facts";
 import { significant } from "@/lib/commands/numbers";

@@ -2,7 +2,7 @@
 import { useEffect, useMemo, useState } from "react";
 import { getResults } from "@/lib/client/api";
 import type { Job, ResultPage } from "@/lib/schemas/api";
-import { CurveChart } from "./curve-chart";
+import { CurveChart } from "@/components/charts/curve-chart";
 import type { Curve } from "./grid-facts";
 import { hasEnded } from "./use-job";
 

@@ -6,6 +6,7 @@ import { commandLine, isAlive, signal, untilGone } from "./processes.mjs";
 import { StartError } from "./say.mjs";
 import { ROOT } from "./settings.mjs";
 
+const ORPHAN_STOP_MS = 3000;
 const file = (dataDir) => path.join(dataDir, "running.json");
 const isLauncher = (pid) => isAlive(pid) && commandLine(pid).includes("start.mjs");
 const isOurChild = (pid) => isAlive(pid) && (commandLine(pid).includes(ROOT) || /\bnext\b.*(start|dev)|next-server/.test(commandLine(pid)));
@@ -20,12 +21,11 @@ export function runningInstance(dataDir) {
 export async function takeInstance(dataDir, address) {
   const other = runningInstance(dataDir);
   if (other) throw new StartError(`Tufa runs from ${dataDir} already: ${other.address} (process ${other.pid}). Stop it first, or name another TUFA_DATA_DIR.`);
-  for (const pid of readJson(file(dataDir))?.children ?? []) {
-    if (!isOurChild(pid)) continue;
+  await Promise.all((readJson(file(dataDir))?.children ?? []).filter(isOurChild).map(async (pid) => {
     signal(pid, "SIGTERM");
-    if (!(await untilGone(pid, 3000))) signal(pid, "SIGKILL");
-    await untilGone(pid, 2000);
-  }
+    if (!(await untilGone(pid, ORPHAN_STOP_MS))) signal(pid, "SIGKILL");
+    await untilGone(pid, ORPHAN_STOP_MS);
+  }));
   noteChildren(dataDir, address, []);
 }
 

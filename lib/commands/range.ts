@@ -127,7 +127,9 @@ export function specForRange(spec: JobSpec, range: RangeRequest, answered: Answe
   const field = range.field;
   if (field === "pCO2" || field === "ANC" || field === "alkalinity" || field === "pH" || field === "DIC") {
     const before = JSON.stringify(each.close);
-    closeOver(each, field);
+    // With the pH held as well, a varied capacity would only move the carbon: the curve is drawn at the answer's own CO2.
+    if ((field === "ANC" || field === "alkalinity") && each.close?.includes("pH")) each.close = [field, "pCO2"];
+    else closeOver(each, field);
     if (JSON.stringify(each.close) !== before) holdAnswered(each, answered);
     if (field === "pCO2") {
       delete each.pCO2;

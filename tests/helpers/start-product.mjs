@@ -25,8 +25,10 @@ export function removeDataDir(dataDir) {
   rmSync(dataDir, { recursive: true, force: true });
 }
 
-/** What tests need to meet a product's database: its address and the key of its sessions. */
-export const productEnv = (dataDir) => ({ DATABASE_URL: clusterUrl(dataDir), NEXTAUTH_SECRET: readFileSync(path.join(dataDir, "session-secret"), "utf8").trim() });
+/** What tests need to meet a product and its database (use-product-database.ts). */
+export const productEnv = (dataDir, address) => ({
+  TUFA_TEST_URL: address, TUFA_TEST_PRODUCT_DATABASE: clusterUrl(dataDir), TUFA_TEST_PRODUCT_SECRET: readFileSync(path.join(dataDir, "session-secret"), "utf8").trim(), TUFA_DATA_DIR: dataDir,
+});
 
 /** URL of the cluster of a data folder, for making databases in it. */
 export const serverUrl = (dataDir) => Object.assign(new URL(clusterUrl(dataDir)), { pathname: "/postgres" }).href;

@@ -5,7 +5,7 @@ export default async function setUp() {
   if (process.env.TUFA_TEST_URL) return undefined;
   const dataDir = makeDataDir();
   const product = await startProduct({ dataDir, onLine: (line) => process.stderr.write(`${line}\n`) });
-  Object.assign(process.env, productEnv(dataDir), { TUFA_TEST_URL: product.address, TUFA_DATA_DIR: dataDir });
+  Object.assign(process.env, productEnv(dataDir, product.address));
   return async () => {
     await product.stop();
     removeDataDir(dataDir);

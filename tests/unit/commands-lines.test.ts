@@ -98,7 +98,8 @@ describe("range", () => {
 
   it("holds the CO2 of the answer when ANC is varied, so that the curve meets the point", () => {
     const spec = sent("range #1 ANC -200 to 3000 µeq/L 81 points");
-    expect(spec.cases[0].close).toContain("ANC");
+    expect(spec.cases[0].close).toEqual(["ANC", "pCO2"]);
+    expect(spec.cases[0].pCO2).toBeCloseTo(0.002, 12);
     expect(spec.vary?.[0]).toMatchObject({ from: "-200 µeq/L", to: "3000 µeq/L", points: 81, scale: "linear" });
   });
 
