@@ -33,6 +33,7 @@ async function stop(code, message) {
   stopping ??= (async () => {
     if (message) say(message);
     endCaptured();
+    for (const each of services) each.letGo();
     const [web, ...workers] = services;
     await web?.stop();
     await Promise.all(workers.map((each) => each.stop()));
@@ -112,8 +113,10 @@ async function main() {
     HOST: settings.host, PORT: String(settings.port), TUFA_DIST_DIR: settings.distDir, NEXT_TELEMETRY_DISABLED: "1",
     NODE_ENV: settings.isDev ? "development" : "production", TUFA_LOG: settings.log,
   };
-  await (settings.isDev ? buildBundles() : buildProduct(settings.distDir, env));
+  // The database before the pages: an address or a password that is wrong shows at once, not after the build.
+  await buildBundles();
   const { hasDemo } = await prepareDatabase(database, settings, env);
+  if (!settings.isDev) await buildProduct(settings.distDir, env);
   if (stopping) return;
   say("Starting web server and workers …");
   services = makeServices(settings, env);

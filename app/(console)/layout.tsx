@@ -1,5 +1,6 @@
 import type { ReactNode } from "react";
 import { CommandPalette } from "@/components/console/command-palette";
+import { QueryProvider } from "@/components/shell/query-provider";
 import { TopBar } from "@/components/shell/top-bar";
 import { requireActor } from "@/lib/http/page-auth";
 
@@ -9,7 +10,7 @@ export default async function ConsoleLayout({ children }: { children: ReactNode 
     <div className="flex h-dvh min-h-0 flex-col">
       <a href="#main" className="sr-only focus:not-sr-only focus:absolute focus:left-2 focus:top-2 focus:z-50 focus:bg-raised focus:px-3 focus:py-2">Skip to the content</a>
       <TopBar name={actor.name} role={actor.role} />
-      <main id="main" tabIndex={-1} className="min-h-0 flex-1 overflow-y-auto outline-none">{children}</main>
+      <main id="main" tabIndex={-1} className="min-h-0 flex-1 overflow-y-auto outline-none"><QueryProvider>{children}</QueryProvider></main>
       <CommandPalette me={{ id: actor.userId, role: actor.role }} />
     </div>
   );

@@ -15,6 +15,11 @@ export function usualColumns(columns: readonly ColumnDescriptor[]): ColumnDescri
   return columns.length <= FEW ? [...columns] : columns.filter((column) => USUAL.has(column.group));
 }
 
+/** The table's own order: what the row says of itself comes last, so that the numbers stand in sight. */
+const LAST = ["message", "warnings", "iterations", "residual"];
+export const inTableOrder = (columns: readonly ColumnDescriptor[]): ColumnDescriptor[] =>
+  [...columns.filter((column) => !LAST.includes(column.name)), ...columns.filter((column) => LAST.includes(column.name))];
+
 /** A panel of checkboxes, by group, that says which columns are shown and downloaded. */
 export function ColumnChooser({ columns, shown, onChange }: { columns: readonly ColumnDescriptor[]; shown: readonly ColumnDescriptor[]; onChange: (names: string[] | null) => void }) {
   const [isOpen, setOpen] = useState(false);

@@ -25,7 +25,7 @@ export function FilterBar({ columns, where, rowCount, total, serverError, onChan
   return (
     <div className="flex min-w-0 flex-1 flex-wrap items-center gap-x-3 gap-y-1 text-sm">
       <form onSubmit={onSubmit} className="flex min-w-0 items-center gap-2">
-        <label htmlFor={id} className="text-dim">Rows where</label>
+        <label htmlFor={id} className="whitespace-nowrap text-dim">Rows where</label>
         <input id={id} value={text} list={`${id}-columns`} onChange={(event) => { setText(event.target.value); setProblem(""); }} placeholder="SI:calcite > 0.5"
           aria-invalid={fault ? true : undefined} aria-describedby={`${id}-fault`} autoComplete="off" spellCheck={false}
           className="min-h-8 w-52 min-w-0 rounded border border-line bg-raised px-2 placeholder:text-faint aria-[invalid=true]:border-bad" />

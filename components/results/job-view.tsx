@@ -4,7 +4,7 @@ import { JobPlot } from "@/components/charts/job-plot";
 import { hasEnded, useJob } from "@/components/console/use-job";
 import { Caution } from "@/components/ui/caution";
 import type { Job } from "@/lib/schemas/api";
-import { ColumnChooser, usualColumns } from "./column-chooser";
+import { ColumnChooser, inTableOrder, usualColumns } from "./column-chooser";
 import { Downloads } from "./downloads";
 import { FilterBar } from "./filter-bar";
 import { JobHead } from "./job-head";
@@ -41,9 +41,9 @@ export function JobView({ initial, me, search }: { initial: Job; me: { id: strin
   const revision = useRevision(job);
   const all = useMemo(() => job.columns ?? [], [job.columns]);
   const shown = useMemo(() => {
-    if (!view.columns) return usualColumns(all);
+    if (!view.columns) return inTableOrder(usualColumns(all));
     const wanted = new Set(view.columns);
-    return all.filter((column) => wanted.has(column.name));
+    return inTableOrder(all.filter((column) => wanted.has(column.name)));
   }, [all, view.columns]);
   const select = shown.length === all.length ? "" : shown.map((column) => column.name).join(",");
   const rows = useRows(job.id, { where: view.where, sort: view.sort, select }, revision);

@@ -95,7 +95,7 @@ function BodyRow({ id, index, row, first, shown, width, activeColumn, onPick }: 
   id: string; index: number; row: Row | null; first: PlacedColumn; shown: readonly PlacedColumn[]; width: number; activeColumn: number; onPick: (column: number) => void;
 }) {
   return (
-    <div role="row" aria-rowindex={index + 2} className={`flex border-b border-line/40 ${index % 2 === 0 ? "" : "bg-sunken/40"}`} style={{ width, height: ROW_HEIGHT }}>
+    <div role="row" aria-rowindex={index + 2} className="flex border-b border-line/40" style={{ width, height: ROW_HEIGHT, background: index % 2 === 0 ? "var(--raised)" : "color-mix(in srgb, var(--sunken) 45%, var(--raised))" }}>
       {[first, ...shown].map((column, k) => {
         const text = row ? cellText(row, column) : "";
         const value = row?.[column.name];
@@ -104,7 +104,7 @@ function BodyRow({ id, index, row, first, shown, width, activeColumn, onPick }: 
         return (
           <div key={column.name} role="gridcell" aria-colindex={column.index + 1} id={isActive ? `${id}-cell` : undefined} onMouseDown={() => onPick(column.index)}
             title={typeof value === "number" ? String(value) : column.width < 300 && text.length < 24 ? undefined : text}
-            className={`truncate px-2 leading-[25px] ${column.type === "text" ? "" : "text-right"} ${k === 0 ? "sticky left-0 z-[5] bg-raised" : ""} ${colour} ${isActive ? "outline-2 outline-offset-[-2px] outline-transparent group-focus:outline-focus" : ""}`}
+            className={`truncate px-2 leading-[25px] ${column.type === "text" ? "" : "text-right"} ${k === 0 ? "sticky left-0 z-[5] bg-inherit" : ""} ${colour} ${isActive ? "outline-2 outline-offset-[-2px] outline-transparent group-focus:outline-focus" : ""}`}
             style={{ width: column.width, marginLeft: k === 1 ? column.left - first.width : 0, flex: "none" }}>
             {row === null ? (k === 0 ? <span className="text-faint">…</span> : "") : text}
           </div>

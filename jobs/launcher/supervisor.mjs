@@ -57,6 +57,9 @@ export class Service {
   /** Ends the process and starts it anew, for code that has changed. */
   restart() { if (this.#child) { this.#quickDeaths = 0; signal(this.#child.pid, "SIGTERM"); } }
 
+  /** From now on a death is no reason to start again: a terminal's Ctrl-C reaches the processes before their turn to be stopped. */
+  letGo() { this.#isStopping = true; }
+
   /** SIGTERM, and SIGKILL where it is still there after its time. */
   async stop() {
     this.#isStopping = true;

@@ -1,6 +1,6 @@
 /**
  * Speed of the kernel on one core: rows per second of full waters (charge + pCO2, Davies), the same with calcite, pH + alkalinity, and a
- * one-unknown curve. Seeded, so that two runs time the same work. Run: npx tsx tests/bench/kernel-bench.ts [rows]
+ * one-unknown curve. Seeded, so that two runs time the same work. Run: npm run bench [-- rows]
  * Exits with 1 where full waters fall below the floor.
  */
 import { compileJob } from "@/lib/chemistry/compile-job";

@@ -66,7 +66,7 @@ describe.sequential("npm start", () => {
     await start();
     expect(product!.tookMs).toBeLessThan(6000);
     expect(await count("app_user")).toBe(3);
-    const pids = [...children(), postmaster(), product!.pid];
+    const pids = [...children(), postmaster(), product!.pid!];
     expect(pids.every(isAlive)).toBe(true);
     const asked = Date.now();
     expect(await product!.stop("SIGTERM")).toBe(0);
@@ -75,9 +75,19 @@ describe.sequential("npm start", () => {
     expect(readdirSync(path.join(dataDir, "users"))).toEqual([]);
   }, 60_000);
 
+  it("ends at a terminal's Ctrl-C, which reaches every process of it at once, without starting any again", async () => {
+    product = await startProduct({ dataDir, isGroup: true });
+    const pids = [...children(), postmaster(), product.pid];
+    process.kill(-product.pid!, "SIGINT");
+    await ended(product.pid!);
+    expect(pids.filter(isAlive)).toEqual([]);
+    expect(product.output()).toContain("Stopping …");
+    expect(product.output()).not.toContain("starting it again");
+  }, 60_000);
+
   it("comes back after every process of it was killed with SIGKILL, over a stale postmaster.pid", async () => {
     await start();
-    const pids = [product!.pid, ...children(), postmaster()];
+    const pids = [product!.pid!, ...children(), postmaster()];
     for (const pid of pids) process.kill(pid, "SIGKILL");
     for (const pid of pids) await ended(pid);
     expect(readdirSync(clusterFolder())).toContain("postmaster.pid");
@@ -89,8 +99,8 @@ describe.sequential("npm start", () => {
   it("ends what a killed launcher has left and takes its place at the same port", async () => {
     const first = await start();
     const orphans = children();
-    process.kill(first.pid, "SIGKILL");
-    await ended(first.pid);
+    process.kill(first.pid!, "SIGKILL");
+    await ended(first.pid!);
     product = await startProduct({ dataDir, port: first.port });
     for (const pid of orphans) expect(isAlive(pid)).toBe(false);
     expect(await isHealthy()).toBe(true);

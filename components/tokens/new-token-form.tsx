@@ -1,0 +1,51 @@
+"use client";
+import { useState, type FormEvent } from "react";
+import { Button } from "@/components/ui/button";
+import { Field } from "@/components/ui/field";
+import { SelectField } from "@/components/ui/select-field";
+import { createToken } from "@/lib/client/accounts";
+import type { Scope } from "@/lib/schemas/actor";
+import type { TokenCreated } from "@/lib/schemas/api";
+
+const SAYS: Record<Scope, string> = {
+  "jobs:read": "read jobs and results", "jobs:write": "solve, submit, cancel", "samples:read": "read sample sets", "samples:write": "upload and delete sample sets", "admin": "people, everyone’s tokens, audit trail",
+};
+const DAYS = [30, 90, 180, 365] as const;
+const DAY_MS = 86_400_000;
+
+/** Name, scopes and life of a new token. All but the administrator's scope are ticked. */
+export function NewTokenForm({ scopes, onMade }: { scopes: readonly Scope[]; onMade: (token: TokenCreated) => void }) {
+  const [name, setName] = useState("");
+  const [chosen, setChosen] = useState<readonly Scope[]>(scopes.filter((scope) => scope !== "admin"));
+  const [days, setDays] = useState("90");
+  const [isBusy, setBusy] = useState(false);
+  const [failure, setFailure] = useState("");
+  const onSubmit = (event: FormEvent): void => {
+    event.preventDefault();
+    if (chosen.length === 0) { setFailure("Choose at least one scope."); return; }
+    setBusy(true);
+    setFailure("");
+    // A minute short of the day: the server counts to the second, and a year is its limit.
+    const expiresAt = days === "never" ? null : new Date(Date.now() + Number(days) * DAY_MS - 60_000).toISOString();
+    createToken({ name: name.trim(), scopes: [...chosen], expiresAt }).then((token) => { setName(""); onMade(token); }, (error: unknown) => setFailure(error instanceof Error ? error.message : "The token was not made.")).finally(() => setBusy(false));
+  };
+  return (
+    <form onSubmit={onSubmit} className="flex flex-col gap-3">
+      <div className="flex flex-wrap items-start gap-4">
+        <Field label="Name" required maxLength={80} value={name} onChange={(event) => setName(event.target.value)} placeholder="nightly batch" className="w-72 max-w-full" />
+        <SelectField label="Expires" value={days} onChange={(event) => setDays(event.target.value)}>{DAYS.map((each) => <option key={each} value={each}>in {each} days</option>)}<option value="never">never</option></SelectField>
+      </div>
+      <fieldset className="flex flex-col text-sm">
+        <legend className="mb-1 text-dim">It may</legend>
+        {scopes.map((scope) => (
+          <label key={scope} className="flex min-h-7 items-center gap-2">
+            <input type="checkbox" checked={chosen.includes(scope)} onChange={(event) => setChosen(event.target.checked ? [...chosen, scope] : chosen.filter((each) => each !== scope))} />
+            <code>{scope}</code> <span className="text-dim">{SAYS[scope]}</span>
+          </label>
+        ))}
+      </fieldset>
+      {failure && <p role="alert" className="text-sm text-bad">{failure}</p>}
+      <div><Button type="submit" kind="primary" disabled={isBusy}>Make the token</Button></div>
+    </form>
+  );
+}
