@@ -4,7 +4,7 @@
  */
 import { spawn } from "node:child_process";
 import { once } from "node:events";
-import { existsSync, readFileSync, rmSync } from "node:fs";
+import { existsSync, mkdirSync, readFileSync, rmSync } from "node:fs";
 import path from "node:path";
 import { captured, endCaptured } from "../jobs/launcher/captured.mjs";
 import { openCluster } from "../jobs/launcher/cluster.mjs";
@@ -60,15 +60,22 @@ async function lintAndTypes() {
   count("types", checked.code === 0, checked.output);
 }
 
+/** Between two steps: once everything is being taken down, nothing more is begun; the process ends from there. */
+const unlessLeaving = () => (isLeaving ? new Promise(() => {}) : undefined);
+
 /** Runs suites by vitest and adds up what its report says. */
 async function runSuites(suites, env) {
+  // What tests leave there when they are broken off goes with the data folder.
+  const temporary = path.join(dataDir, "tmp");
+  mkdirSync(temporary, { recursive: true, mode: 0o711 });
   const report = path.join(dataDir, `report-${suites[0]}.json`);
   vitest = spawn(process.execPath, [
     path.join(ROOT, "node_modules/vitest/vitest.mjs"), "run", ...suites.flatMap((name) => ["--project", name]), "--reporter=default", "--reporter=json", `--outputFile.json=${report}`,
   // A group of its own, so that its workers and what they have started can be ended together.
-  ], { cwd: ROOT, stdio: ["ignore", "inherit", "inherit"], env: { ...process.env, ...env }, detached: true });
+  ], { cwd: ROOT, stdio: ["ignore", "inherit", "inherit"], env: { ...process.env, ...env, TMPDIR: temporary }, detached: true });
   const [code] = await once(vitest, "exit");
   vitest = null;
+  await unlessLeaving();
   const results = existsSync(report) ? JSON.parse(readFileSync(report, "utf8")) : null;
   rmSync(report, { force: true });
   const passed = results?.numPassedTests ?? 0;
@@ -89,9 +96,11 @@ async function runAll() {
   await ensurePrograms();
   step("lint and types");
   await lintAndTypes();
+  await unlessLeaving();
   step("database, build and product");
   cluster = await openCluster(dataDir, { isThrowaway: true });
   product = await startProduct({ dataDir, onLine: (line) => say(`  ${line}`) }).catch((error) => { count("the product starts", false, error.message); return null; });
+  await unlessLeaving();
   step(SUITES_IN_PROCESS.join(", "));
   await runSuites(SUITES_IN_PROCESS, { TUFA_TEST_SERVER: serverUrl(dataDir), TUFA_LOG: "warn" });
   if (!product) return;
@@ -113,13 +122,19 @@ async function leave() {
   if (dataDir) removeDataDir(dataDir);
 }
 
-async function endGroup(child) {
-  const ended = once(child, "exit");
-  process.kill(-child.pid, "SIGTERM");
-  await Promise.race([ended, pause(15_000)]);
-  try {
-    process.kill(-child.pid, "SIGKILL");
-  } catch { /* all gone */ }
+/** Ends vitest with all that its tests have started: products among them take down their own databases, for which they get time. */
+async function endGroup({ pid }) {
+  const send = (name) => {
+    try {
+      process.kill(-pid, name);
+      return true;
+    } catch {
+      return false; // all gone
+    }
+  };
+  send("SIGTERM");
+  for (const end = Date.now() + 20_000; send(0) && Date.now() < end;) await pause(100);
+  send("SIGKILL");
 }
 
 for (const name of ["SIGINT", "SIGTERM", "SIGHUP"]) {

@@ -5,6 +5,6 @@ import { requireActor } from "@/lib/http/page-auth";
 export const metadata: Metadata = { title: "Console" };
 
 export default async function ConsolePage() {
-  const actor = await requireActor();
+  const actor = await requireActor("/");
   return <Console me={{ id: actor.userId, role: actor.role }} />;
 }

@@ -1,6 +1,6 @@
 "use client";
 import Link from "next/link";
-import { useEffect, useState, type FormEvent } from "react";
+import { useEffect, useState, type FormEvent, type ReactNode } from "react";
 import { Button } from "@/components/ui/button";
 import { Field } from "@/components/ui/field";
 import { setPassword } from "@/lib/client/accounts";
@@ -27,8 +27,8 @@ export function SetPasswordForm() {
       setError(issue ? `${issue.message} ${issue.remedy ?? ""}` : reason instanceof Error ? reason.message : "The password was not set.");
     });
   };
-  if (doneFor) return <p className="text-sm">The password of {doneFor} is set. <Link href="/sign-in" className="text-accent underline underline-offset-4">Sign in</Link></p>;
-  if (secret === "") return <p role="alert" className="text-sm text-bad">This address lacks its secret part. Open the whole link as it was given, or ask an administrator for a new one.</p>;
+  if (doneFor) return <Said><p role="status" className="text-sm">The password of {doneFor} is set. <Link href="/sign-in" autoFocus className="text-accent underline underline-offset-4">Sign in</Link></p></Said>;
+  if (secret === "") return <Said><p role="alert" className="text-sm text-bad">This address lacks its secret part. Open the whole link as it was given, or ask an administrator for a new one.</p></Said>;
   return (
     <form onSubmit={onSubmit} className="flex flex-col gap-4">
       <h1 className="text-base font-semibold">Set a password</h1>
@@ -37,4 +37,8 @@ export function SetPasswordForm() {
       <Button type="submit" kind="primary">Set it</Button>
     </form>
   );
+}
+
+function Said({ children }: { children: ReactNode }) {
+  return <div className="flex flex-col gap-4"><h1 className="text-base font-semibold">Set a password</h1>{children}</div>;
 }

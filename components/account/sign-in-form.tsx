@@ -3,6 +3,7 @@ import { signIn } from "next-auth/react";
 import { useRef, useState, type FormEvent } from "react";
 import { Button } from "@/components/ui/button";
 import { Field } from "@/components/ui/field";
+import { wantedAddress } from "@/lib/client/sign-in-address";
 
 interface DemoAccount { name: string; email: string; role: string; password: string }
 
@@ -10,13 +11,6 @@ const REASONS: Record<string, string> = {
   credentials: "Address and password do not go together.",
   "rate-limited": "Too many attempts at this address. Wait a quarter of an hour, or ask an administrator for a new link.",
 };
-
-/** Only addresses of this very site: a link from elsewhere must not choose where a signed-in person lands. */
-function wantedPage(): string {
-  const wanted = new URLSearchParams(location.search).get("callbackUrl") ?? "/";
-  const url = new URL(wanted, location.origin);
-  return url.origin === location.origin && !url.pathname.startsWith("/sign-in") ? url.pathname + url.search : "/";
-}
 
 export function SignInForm({ demo }: { demo: readonly DemoAccount[] }) {
   const [email, setEmail] = useState("");
@@ -30,7 +24,7 @@ export function SignInForm({ demo }: { demo: readonly DemoAccount[] }) {
     setError("");
     try {
       const result = await signIn("credentials", { email: address, password: secret, redirect: false });
-      if (result?.ok && !result.error) { location.assign(wantedPage()); return; }
+      if (result?.ok && !result.error) { location.assign(wantedAddress(location.search, location.origin)); return; }
       setError(REASONS[result?.error ?? ""] ?? "Signing in failed; try again.");
     } catch {
       setError("The server does not answer; try again in a moment.");

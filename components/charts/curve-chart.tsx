@@ -1,66 +1,71 @@
 "use client";
 import { useId, useMemo } from "react";
-import { FormulaText } from "@/components/ui/formula-text";
 import type { Curve } from "@/components/console/grid-facts";
-import { significant } from "@/lib/commands/numbers";
-import { chartLabel, colourOf, dashOf, Marker, useWidth } from "./chart-frame";
-import { scaleFor } from "./scale";
+import { ChartFrame, colourOf, dashOf, frameFor, type LegendItem, Marks, MOST_WIDTH, useWidth } from "./chart-frame";
+import { extentOf, scaleFor, tickLabel } from "./scale";
 
-/** Drawn at the size it is shown at, so that its letters keep theirs on a narrow screen. */
-const MOST_WIDTH = 760;
-const MARGIN = { left: 62, right: 20, top: 12, bottom: 44 };
+/** A curve, with the range it is the middle of where there is one. */
+export interface DrawnCurve extends Curve { band?: readonly { x: number; low: number; high: number }[] }
 
-/** Curves over one field, with a mark where the entry's own point lies. The table below it holds the same numbers. */
-export function CurveChart({ curves, xLabel, yLabel, isLogX, mark, title, asPoints = false }: {
-  curves: readonly Curve[]; xLabel: string; yLabel: string; isLogX: boolean; mark: { x: number; y: number } | null; title: string;
+interface CurveChartProps {
+  curves: readonly DrawnCurve[]; xLabel: string; yLabel: string; isLogX: boolean; isLogY?: boolean; mark: { x: number; y: number } | null; title: string;
   /** Draws every point by itself instead of joining them. */
   asPoints?: boolean;
-}) {
+}
+
+const path = (points: readonly (readonly [number, number])[]): string => points.map(([x, y], index) => `${index === 0 ? "M" : "L"}${x.toFixed(1)} ${y.toFixed(1)}`).join("");
+
+/** Curves over one field, with a mark where the entry's own point lies. The table below it holds the same numbers. */
+export function CurveChart({ curves, xLabel, yLabel, isLogX, isLogY = false, mark, title, asPoints = false }: CurveChartProps) {
   const id = useId();
   const [box, width] = useWidth(MOST_WIDTH);
-  const height = Math.round(Math.min(320, Math.max(220, width * 0.6)));
+  // What has no place on an axis is left out rather than drawn at its edge: a NaN would undo the whole path.
+  const drawable = useMemo(() => {
+    const hasPlace = (x: number, y: number): boolean => Number.isFinite(x) && Number.isFinite(y) && (!isLogX || x > 0) && (!isLogY || y > 0);
+    return curves.map((curve) => ({ ...curve, points: curve.points.filter((point) => hasPlace(point.x, point.y)), band: curve.band?.filter((each) => hasPlace(each.x, each.low) && Number.isFinite(each.high)) }));
+  }, [curves, isLogX, isLogY]);
   const drawing = useMemo(() => {
-    const points = [...curves.flatMap((curve) => curve.points), ...(mark ? [mark] : [])];
+    const points = [...drawable.flatMap((curve) => curve.points), ...(mark ? [mark] : [])];
     if (points.length === 0) return null;
-    const x = scaleFor(points.map((point) => point.x), MARGIN.left, width - MARGIN.right, isLogX, false);
-    const y = scaleFor(points.map((point) => point.y), height - MARGIN.bottom, MARGIN.top, false, true);
-    const paths = curves.map((curve) => curve.points.map((point, index) => `${index === 0 ? "M" : "L"}${x.at(point.x).toFixed(1)} ${y.at(point.y).toFixed(1)}`).join(""));
-    return { x, y, paths };
-  }, [curves, isLogX, mark, width, height]);
+    const labels = [...(curves.length > 1 ? curves.map((curve) => curve.label) : []), ...(mark ? ["the entry it came from"] : [])];
+    const frame = frameFor(width, labels);
+    const xs = points.map((point) => point.x);
+    const ys = [...points.map((point) => point.y), ...drawable.flatMap((curve) => curve.band?.flatMap((each) => [each.low, each.high]) ?? [])];
+    const x = scaleFor(xs, frame.left, frame.right, isLogX, asPoints);
+    const y = scaleFor(ys, frame.bottom, frame.top, isLogY, true);
+    const drawn = drawable.map((curve) => ({
+      line: curve.points.map((point) => [x.at(point.x), y.at(point.y)] as const),
+      band: curve.band && curve.band.length > 1
+        ? `${path(curve.band.map((each) => [x.at(each.x), y.at(each.high)] as const))}L${path([...curve.band].reverse().map((each) => [x.at(each.x), y.at(each.low)] as const)).slice(1)}Z` : null,
+    }));
+    return { frame, x, y, drawn, description: describe(drawable, xs, ys, xLabel, yLabel, asPoints) };
+  }, [curves, drawable, mark, width, isLogX, isLogY, asPoints, xLabel, yLabel]);
   if (!drawing) return <p className="text-sm text-dim">No point of this range was solved.</p>;
-  const { x, y, paths } = drawing;
+  const { frame, x, y, drawn, description } = drawing;
+  const legend: LegendItem[] = [
+    ...(curves.length > 1 ? curves.map((curve, index) => ({ label: curve.label, sample: asPoints ? <Marks points={[[13, 0]]} index={index} /> : <line x2="26" stroke={colourOf(index)} strokeWidth={1.8} strokeDasharray={dashOf(index)} /> })) : []),
+    ...(mark ? [{ label: "the entry it came from", sample: <circle cx={13} r={4.5} fill="var(--page)" stroke="var(--ink)" strokeWidth={1.6} /> }] : []),
+  ];
   return (
     <figure ref={box} className="max-w-[760px]">
-      <svg viewBox={`0 0 ${width} ${height}`} role="img" aria-labelledby={id} width={width} height={height} className="block max-w-full text-xs">
-        <title id={id}>{title}</title>
-        {x.ticks.map((tick) => (
-          <g key={tick} transform={`translate(${x.at(tick).toFixed(1)} 0)`}>
-            <line y1={MARGIN.top} y2={height - MARGIN.bottom} stroke="var(--line)" strokeWidth={0.6} />
-            <text y={height - MARGIN.bottom + 16} textAnchor="middle" fill="var(--dim)">{significant(tick, 3).replace(/(\.\d*?)0+$/, "$1").replace(/\.$/, "")}</text>
-          </g>
-        ))}
-        {y.ticks.map((tick) => (
-          <g key={tick} transform={`translate(0 ${y.at(tick).toFixed(1)})`}>
-            <line x1={MARGIN.left} x2={width - MARGIN.right} stroke="var(--line)" strokeWidth={0.6} />
-            <text x={MARGIN.left - 8} dy="0.35em" textAnchor="end" fill="var(--dim)">{tick.toString().replace("-", "−")}</text>
-          </g>
-        ))}
-        <text x={(MARGIN.left + width - MARGIN.right) / 2} y={height - 6} textAnchor="middle" fill="var(--ink)">{chartLabel(xLabel)}</text>
-        <text transform={`translate(14 ${(MARGIN.top + height - MARGIN.bottom) / 2}) rotate(-90)`} textAnchor="middle" fill="var(--ink)">{chartLabel(yLabel)}</text>
-        {asPoints && curves.map((curve, index) => curve.points.map((point, at) => (
-          <Marker key={`${index}-${at}`} x={x.at(point.x)} y={y.at(point.y)} index={index} />
-        )))}
-        {!asPoints && paths.map((path, index) => <path key={index} d={path} fill="none" stroke={colourOf(index)} strokeWidth={1.8} strokeDasharray={dashOf(index)} />)}
-        {mark && <circle cx={x.at(mark.x)} cy={y.at(mark.y)} r={4.5} fill="var(--page)" stroke="var(--ink)" strokeWidth={1.6} />}
-      </svg>
-      {(curves.length > 1 || mark) && (
-        <figcaption className="flex flex-wrap gap-x-5 pl-2 text-xs text-dim">
-          {curves.length > 1 && curves.map((curve, index) => (
-            <span key={curve.label}><svg aria-hidden="true" width="26" height="8" className="mr-1 inline-block">{asPoints ? <Marker x={13} y={4} index={index} /> : <line x1="0" x2="26" y1="4" y2="4" stroke={colourOf(index)} strokeWidth={1.8} strokeDasharray={dashOf(index)} />}</svg><FormulaText>{curve.label}</FormulaText></span>
-          ))}
-          {mark && <span>○ the entry it came from</span>}
-        </figcaption>
-      )}
+      <ChartFrame frame={frame} x={x} y={y} xLabel={xLabel} yLabel={yLabel} isXLined titleId={id} title={title} description={description} legend={legend}>
+        {drawn.map(({ band }, index) => band && <path key={`band-${index}`} d={band} fill={colourOf(index)} fillOpacity={0.14} stroke="none" />)}
+        {drawn.map(({ line }, index) => (asPoints || line.length === 1
+          ? <Marks key={index} points={line} index={index} />
+          : <path key={index} d={path(line)} fill="none" stroke={colourOf(index)} strokeWidth={1.8} strokeDasharray={dashOf(index)} />))}
+        {mark && <circle cx={x.at(mark.x).toFixed(1)} cy={y.at(mark.y).toFixed(1)} r={4.5} fill="var(--page)" stroke="var(--ink)" strokeWidth={1.6} />}
+      </ChartFrame>
     </figure>
   );
+}
+
+/** The picture in words. */
+function describe(curves: readonly DrawnCurve[], xs: readonly number[], ys: readonly number[], xLabel: string, yLabel: string, asPoints: boolean): string {
+  const said = (values: readonly number[]): string => {
+    const extent = extentOf(values);
+    return extent ? `from ${tickLabel(Number(extent.low.toPrecision(4)))} to ${tickLabel(Number(extent.high.toPrecision(4)))}` : "without values";
+  };
+  const names = curves.length > 1 ? ` (${curves.map((curve) => curve.label).join("; ")})` : "";
+  const what = asPoints ? `${xs.length} points` : `${curves.length} ${curves.length === 1 ? "curve" : "curves"}`;
+  return `${what}${names}: ${yLabel} ${said(ys)} over ${xLabel} ${said(xs)}. The table of rows holds the same numbers.`;
 }

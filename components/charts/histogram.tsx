@@ -1,48 +1,42 @@
 "use client";
 import { useId, useMemo } from "react";
-import { FormulaText } from "@/components/ui/formula-text";
-import { significant } from "@/lib/commands/numbers";
-import { chartLabel, colourOf, dashOf, useWidth } from "./chart-frame";
+import { ChartFrame, colourOf, dashOf, frameFor, MOST_WIDTH, useWidth } from "./chart-frame";
 import { binsOf } from "./histogram-bins";
-import { scaleFor } from "./scale";
+import { scaleFor, tickLabel } from "./scale";
 
-const MOST_WIDTH = 760;
-const MARGIN = { left: 62, right: 20, top: 12, bottom: 44 };
+interface HistogramProps {
+  lists: readonly (readonly number[])[]; labels: readonly string[]; xLabel: string; title: string;
+  /** Marks zero, where it divides: a saturation index of zero is equilibrium. */
+  isZeroMarked?: boolean;
+}
 
 /** Counts of a column's values, an outline for each case. */
-export function Histogram({ lists, labels, xLabel, title }: { lists: readonly (readonly number[])[]; labels: readonly string[]; xLabel: string; title: string }) {
+export function Histogram({ lists, labels, xLabel, title, isZeroMarked = false }: HistogramProps) {
   const id = useId();
   const [box, width] = useWidth(MOST_WIDTH);
-  const height = Math.round(Math.min(320, Math.max(220, width * 0.6)));
   const bins = useMemo(() => binsOf(lists), [lists]);
   if (!bins) return <p className="text-sm text-dim">No value to count.</p>;
-  const x = scaleFor(bins.edges, MARGIN.left, width - MARGIN.right, false, false);
-  const most = Math.max(...bins.counts.flat());
-  const y = scaleFor([0, most * 1.06], height - MARGIN.bottom, MARGIN.top, false, false);
+  const { edges, counts } = bins;
+  const isMany = labels.length > 1;
+  const frame = frameFor(width, isMany ? labels : []);
+  const x = scaleFor(edges, frame.left, frame.right, false, false);
+  const most = counts.flat().reduce((a, b) => Math.max(a, b), 1);
+  const y = scaleFor([0, most * 1.06], frame.bottom, frame.top, false, false);
+  const wholeY = { ...y, ticks: y.ticks.filter(Number.isInteger) };
+  const legend = isMany ? labels.map((label, index) => ({ label, sample: <line x2="26" stroke={colourOf(index)} strokeWidth={1.8} strokeDasharray={dashOf(index)} /> })) : [];
+  const total = counts.flat().reduce((a, b) => a + b, 0);
+  const hasZero = isZeroMarked && edges[0] < 0 && edges[edges.length - 1] > 0;
   return (
     <figure ref={box} className="max-w-[760px]">
-      <svg viewBox={`0 0 ${width} ${height}`} role="img" aria-labelledby={id} width={width} height={height} className="block max-w-full text-xs">
-        <title id={id}>{title}</title>
-        {y.ticks.filter(Number.isInteger).map((tick) => (
-          <g key={tick} transform={`translate(0 ${y.at(tick).toFixed(1)})`}>
-            <line x1={MARGIN.left} x2={width - MARGIN.right} stroke="var(--line)" strokeWidth={0.6} />
-            <text x={MARGIN.left - 8} dy="0.35em" textAnchor="end" fill="var(--dim)">{tick}</text>
-          </g>
-        ))}
-        {x.ticks.map((tick) => <text key={tick} x={x.at(tick).toFixed(1)} y={height - MARGIN.bottom + 16} textAnchor="middle" fill="var(--dim)">{significant(tick, 3).replace(/(\.\d*?)0+$/, "$1").replace(/\.$/, "")}</text>)}
-        {bins.counts.map((counts, index) => {
-          const steps = counts.map((count, k) => `L${x.at(bins.edges[k]).toFixed(1)} ${y.at(count).toFixed(1)}L${x.at(bins.edges[k + 1]).toFixed(1)} ${y.at(count).toFixed(1)}`).join("");
-          const path = `M${x.at(bins.edges[0]).toFixed(1)} ${y.at(0).toFixed(1)}${steps}L${x.at(bins.edges[counts.length]).toFixed(1)} ${y.at(0).toFixed(1)}`;
-          return <path key={index} d={path} fill={colourOf(index)} fillOpacity={0.14} stroke={colourOf(index)} strokeWidth={1.5} strokeDasharray={dashOf(index)} />;
+      <ChartFrame frame={frame} x={x} y={wholeY} xLabel={xLabel} yLabel="rows" isXLined={false} titleId={id} title={title} legend={legend}
+        description={`${total} values in ${edges.length - 1} classes of ${tickLabel(Number((edges[1] - edges[0]).toPrecision(6)))}, from ${tickLabel(edges[0])} to ${tickLabel(edges[edges.length - 1])}; at most ${most} in one. The table of rows holds the same numbers.`}>
+        {hasZero && <line x1={x.at(0).toFixed(1)} x2={x.at(0).toFixed(1)} y1={frame.top} y2={frame.bottom} stroke="var(--dim)" strokeWidth={1} strokeDasharray="1 3" />}
+        {counts.map((own, index) => {
+          const steps = own.map((count, k) => `L${x.at(edges[k]).toFixed(1)} ${y.at(count).toFixed(1)}L${x.at(edges[k + 1]).toFixed(1)} ${y.at(count).toFixed(1)}`).join("");
+          const data = `M${x.at(edges[0]).toFixed(1)} ${y.at(0).toFixed(1)}${steps}L${x.at(edges[own.length]).toFixed(1)} ${y.at(0).toFixed(1)}`;
+          return <path key={index} d={data} fill={colourOf(index)} fillOpacity={0.14} stroke={colourOf(index)} strokeWidth={1.5} strokeDasharray={dashOf(index)} />;
         })}
-        <text x={(MARGIN.left + width - MARGIN.right) / 2} y={height - 6} textAnchor="middle" fill="var(--ink)">{chartLabel(xLabel)}</text>
-        <text transform={`translate(14 ${(MARGIN.top + height - MARGIN.bottom) / 2}) rotate(-90)`} textAnchor="middle" fill="var(--ink)">rows</text>
-      </svg>
-      {labels.length > 1 && (
-        <figcaption className="flex flex-wrap gap-x-5 pl-2 text-xs text-dim">
-          {labels.map((label, index) => <span key={label}><svg aria-hidden="true" width="26" height="8" className="mr-1 inline-block"><line x1="0" x2="26" y1="4" y2="4" stroke={colourOf(index)} strokeWidth={1.8} strokeDasharray={dashOf(index)} /></svg><FormulaText>{label}</FormulaText></span>)}
-        </figcaption>
-      )}
+      </ChartFrame>
     </figure>
   );
 }

@@ -1,36 +1,84 @@
-/** Scales of charts: from values to pixels, and the round values that are marked. */
+/** Scales of charts: from values to pixels, and the round values that are marked. Pure; shared by every chart. */
+import { significant } from "@/lib/commands/numbers";
 
-export interface Scale { at(value: number): number; ticks: number[] }
+export interface Scale {
+  at(value: number): number;
+  ticks: number[];
+  isLog: boolean;
+}
+
+/** Smallest and largest finite value, drawn apart where they are the same; null without any. */
+export function extentOf(values: readonly number[], isLog = false): { low: number; high: number } | null {
+  let low = Infinity;
+  let high = -Infinity;
+  for (const value of values) {
+    if (!Number.isFinite(value) || (isLog && value <= 0)) continue;
+    if (value < low) low = value;
+    if (value > high) high = value;
+  }
+  if (low > high) return null;
+  // Closer than this, the ticks between them could not be told apart in a double.
+  if (high - low > 1e-9 * Math.max(Math.abs(low), Math.abs(high))) return { low, high };
+  return { low: low - (Math.abs(low) * 0.05 || 0.5), high: high + (Math.abs(high) * 0.05 || 0.5) };
+}
+
+/** The round number, 1, 2 or 5 times a power of ten, nearest to a size. */
+export function roundStep(raw: number): number {
+  const power = 10 ** Math.floor(Math.log10(raw));
+  return [1, 2, 5, 10].map((each) => each * power).reduce((best, each) => (Math.abs(Math.log(each / raw)) < Math.abs(Math.log(best / raw)) ? each : best));
+}
 
 /** Round steps of 1, 2 or 5 times a power of ten, about `count` of them. */
 export function linearTicks(low: number, high: number, count: number): number[] {
-  const raw = (high - low) / count;
-  const power = 10 ** Math.floor(Math.log10(raw));
-  const step = [1, 2, 5, 10].map((each) => each * power).reduce((best, each) => (Math.abs(Math.log(each / raw)) < Math.abs(Math.log(best / raw)) ? each : best));
+  const step = roundStep((high - low) / count);
   const ticks: number[] = [];
-  for (let k = Math.ceil(low / step - 1e-9); k * step <= high + step * 1e-9; k++) ticks.push(Number((k * step).toPrecision(12)));
+  for (let k = Math.ceil(low / step - 1e-9); k * step <= high + step * 1e-9; k++) ticks.push(Number((k * step).toPrecision(12)) + 0);
   return ticks;
 }
 
-export function logTicks(low: number, high: number, isNarrow: boolean): number[] {
+/** Pixels a decade needs for ticks at 2 and 5 too, and for its own alone. */
+const ROOMY_DECADE = 120;
+const NARROW_DECADE = 50;
+
+/** Powers of ten, with 2 and 5 between them where there is room; every second or third power of a very long axis. @param pixels length of the axis */
+export function logTicks(low: number, high: number, pixels: number): number[] {
   const ticks: number[] = [];
-  const factors = high / low > (isNarrow ? 50 : 2000) ? [1] : [1, 2, 5];
+  const perDecade = pixels / Math.log10(high / low);
+  const factors = perDecade < ROOMY_DECADE ? [1] : [1, 2, 5];
+  const stride = Math.max(1, Math.ceil(NARROW_DECADE / perDecade));
   for (let power = Math.floor(Math.log10(low)); power <= Math.ceil(Math.log10(high)); power++) {
+    if (power % stride !== 0) continue;
     for (const factor of factors) {
-      const tick = factor * 10 ** power;
-      if (tick >= low * 0.999 && tick <= high * 1.001) ticks.push(Number(tick.toPrecision(6)));
+      const tick = Number(`${factor}e${power}`);
+      if (tick >= low * 0.999 && tick <= high * 1.001) ticks.push(tick);
     }
   }
   return ticks;
 }
 
+const PAD = 0.06;
+
+/** A scale from values to the pixels between `from` and `to`. @param isPadded leaves air beyond the outermost values. */
 export function scaleFor(values: readonly number[], from: number, to: number, isLog: boolean, isPadded: boolean): Scale {
-  let low = Math.min(...values);
-  let high = Math.max(...values);
-  if (low === high) { low -= Math.abs(low) * 0.05 || 0.5; high += Math.abs(high) * 0.05 || 0.5; }
-  const pad = isPadded ? (high - low) * 0.06 : 0;
-  if (isLog) return { at: (value) => from + ((Math.log(value) - Math.log(low)) / (Math.log(high) - Math.log(low))) * (to - from), ticks: logTicks(low, high, Math.abs(to - from) < 400) };
-  low -= pad;
-  high += pad;
-  return { at: (value) => from + ((value - low) / (high - low)) * (to - from), ticks: linearTicks(low, high, Math.max(3, Math.round(Math.abs(to - from) / (isPadded ? 52 : 85)))) };
+  const { low, high } = extentOf(values, isLog) ?? (isLog ? { low: 1, high: 10 } : { low: 0, high: 1 });
+  const pad = isPadded ? PAD : 0;
+  const wanted = Math.max(3, Math.round(Math.abs(to - from) / (isPadded ? 52 : 85)));
+  if (isLog) {
+    const room = (high / low) ** pad;
+    const [first, last] = [low / room, high * room];
+    const span = Math.log(last / first);
+    const ticks = logTicks(first, last, Math.abs(to - from));
+    // Less than a step of 1-2-5 wide: the axis is as good as linear.
+    return { isLog, at: (value) => from + (Math.log(value / first) / span) * (to - from), ticks: ticks.length > 1 ? ticks : linearTicks(first, last, wanted) };
+  }
+  const [first, last] = [low - pad * (high - low), high + pad * (high - low)];
+  return { isLog, at: (value) => from + ((value - first) / (last - first)) * (to - from), ticks: linearTicks(first, last, wanted) };
+}
+
+/** A tick in figures: as short as it can be, with a real minus. */
+export function tickLabel(tick: number): string {
+  const size = Math.abs(tick);
+  if (tick === 0) return "0";
+  if (size >= 1e-4 && size < 1e6) return String(Number(tick.toPrecision(6))).replace("-", "−");
+  return significant(tick, 3).replace(/(\.\d*?)0+(?= )/, "$1").replace(/\.(?= )/, "").replaceAll(" ", "").replace(/^(−?)1×/, "$1");
 }

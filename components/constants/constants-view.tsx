@@ -3,7 +3,7 @@ import { keepPreviousData, useQuery } from "@tanstack/react-query";
 import { useDeferredValue, useMemo, useState } from "react";
 import { DataTable, type TableColumn } from "@/components/ui/data-table";
 import { Field } from "@/components/ui/field";
-import { FormulaText } from "@/components/ui/formula-text";
+import { FormulaText, ReactionText } from "@/components/ui/formula-text";
 import { LoadState } from "@/components/ui/load-state";
 import { Page, Section } from "@/components/ui/page";
 import { getConstants } from "@/lib/client/api";
@@ -11,11 +11,11 @@ import { fixed } from "@/lib/commands/numbers";
 import type { ConstantEntry } from "@/lib/schemas/api";
 
 const columnsAt = (temperature: number): readonly TableColumn<ConstantEntry>[] => [
-  { title: "name", className: "whitespace-nowrap", cell: (entry) => <FormulaText>{entry.name}</FormulaText> },
-  { title: "reaction", className: "whitespace-nowrap", cell: (entry) => (entry.reaction ? <FormulaText>{entry.reaction}</FormulaText> : <span className="text-dim">reference species of its balance</span>) },
+  { title: "name", className: "whitespace-nowrap", cell: (entry) => (entry.kind === "species" ? <ReactionText>{entry.name}</ReactionText> : <FormulaText>{entry.name}</FormulaText>) },
+  { title: "reaction", className: "whitespace-nowrap", cell: (entry) => (entry.reaction ? <ReactionText>{entry.reaction}</ReactionText> : <span className="text-dim">reference species of its balance</span>) },
   { title: `log K at ${temperature} °C`, isRight: true, cell: (entry) => fixed(entry.logK, 3) },
   { title: "at 25 °C", isRight: true, cell: (entry) => fixed(entry.logK25, 3) },
-  { title: "source", cell: (entry) => <span className="text-xs">{entry.reference ?? ""}{entry.fromMemory && <span className="text-warn"> From memory.</span>}{entry.note && <span className="text-dim"> {entry.note}</span>}</span> },
+  { title: "source", cell: (entry) => <span className="text-xs">{entry.reference ? `${entry.reference}.` : ""}{entry.fromMemory && <span className="text-warn"> From memory.</span>}{entry.note && <span className="text-dim"> {entry.note}</span>}</span> },
 ];
 
 const fits = (entry: ConstantEntry, words: string): boolean =>

@@ -23,6 +23,7 @@ export const inTableOrder = (columns: readonly ColumnDescriptor[]): ColumnDescri
 /** A panel of checkboxes, by group, that says which columns are shown and downloaded. */
 export function ColumnChooser({ columns, shown, onChange }: { columns: readonly ColumnDescriptor[]; shown: readonly ColumnDescriptor[]; onChange: (names: string[] | null) => void }) {
   const [isOpen, setOpen] = useState(false);
+  const [sought, setSought] = useState("");
   const box = useRef<HTMLDivElement>(null);
   const button = useRef<HTMLButtonElement>(null);
   const names = new Set(shown.map((column) => column.name));
@@ -43,9 +44,10 @@ export function ColumnChooser({ columns, shown, onChange }: { columns: readonly 
       </button>
       {isOpen && (
         <div role="group" aria-label="Columns" className="absolute right-0 z-30 mt-1 max-h-[60vh] w-72 max-w-[86vw] overflow-auto rounded border border-line bg-raised p-3 text-sm shadow-lg">
+          {columns.length > FEW && <input type="search" aria-label="Find a column" placeholder="Find a column" value={sought} onChange={(event) => setSought(event.target.value)} autoComplete="off" spellCheck={false} className="mb-2 min-h-8 w-full rounded border border-line bg-page px-2 placeholder:text-faint" />}
           <button type="button" className="mb-2 min-h-7 text-accent underline-offset-4 hover:underline" onClick={() => onChange(null)}>The usual ones</button>
           {GROUPS.map(([group, title]) => {
-            const own = columns.filter((column) => column.group === group);
+            const own = columns.filter((column) => column.group === group && column.name.toLowerCase().includes(sought.trim().toLowerCase()));
             if (own.length === 0) return null;
             const count = own.filter((column) => names.has(column.name)).length;
             return (

@@ -10,13 +10,14 @@ import { cancelJob, getJobSpec, retryJob } from "@/lib/client/api";
 import { grouped } from "@/lib/commands/numbers";
 import { keepDraft } from "@/lib/commands/stream-memory";
 import type { Job, JobEvent } from "@/lib/schemas/api";
+import { whereStatus, whereWarned } from "./use-view";
 
 const STATUS_COLOURS: Record<Job["status"], string> = { queued: "text-dim", running: "text-accent", done: "text-good", failed: "text-bad", cancelled: "text-warn" };
 
-interface HeadProps { job: Job; event: JobEvent | null; me: { id: string }; onShowStatus: (status: string) => void; onChanged: (job: Job) => void; announce: (text: string) => void }
+interface HeadProps { job: Job; event: JobEvent | null; me: { id: string }; /** Narrows the rows shown. */ onShow: (narrow: (where: readonly string[]) => string[]) => void; onChanged: (job: Job) => void; announce: (text: string) => void }
 
 /** What the job is, how far it has come, and what can be done with it. */
-export function JobHead({ job, event, me, onShowStatus, onChanged, announce }: HeadProps) {
+export function JobHead({ job, event, me, onShow, onChanged, announce }: HeadProps) {
   const router = useRouter();
   const [isAsking, setAsking] = useState(false);
   const act = (what: Promise<Job>, said: string): void => { what.then((changed) => { onChanged(changed); announce(said); }, (error: unknown) => announce(error instanceof Error ? error.message : "That failed.")); };
@@ -35,7 +36,7 @@ export function JobHead({ job, event, me, onShowStatus, onChanged, announce }: H
         </span>
       </div>
       <Progress job={job} event={event} />
-      <Counts job={job} onShowStatus={onShowStatus} />
+      <Counts job={job} onShow={onShow} />
       {job.error && <p className="mt-1 text-sm text-bad">{job.error}</p>}
       <Provenance job={job} />
       <ConfirmDialog isOpen={isAsking} title="Cancel this job?" action="Cancel the job" onClose={() => setAsking(false)} onConfirm={() => act(cancelJob(job.id), "Cancelled.")}>
@@ -66,23 +67,23 @@ function Progress({ job, event }: { job: Job; event: JobEvent | null }) {
   );
 }
 
-function Counts({ job, onShowStatus }: { job: Job; onShowStatus: (status: string) => void }) {
+function Counts({ job, onShow }: Pick<HeadProps, "job" | "onShow">) {
   const { counts } = job;
   const shown = ([["ok", counts.ok, "text-good"], ["invalid", counts.invalid, "text-bad"], ["not-converged", counts.notConverged, "text-bad"]] as const).filter(([name, count]) => name === "ok" || count > 0);
   return (
     <p className="mt-2 flex flex-wrap gap-x-4 gap-y-1 text-sm tabular-nums">
       <span>{grouped(counts.rows)} rows</span>
       {shown.map(([name, count, colour]) => (
-        <button key={name} type="button" onClick={() => onShowStatus(name)} className={`min-h-6 ${colour} underline-offset-4 hover:underline`} title={`Show the rows that are ${name}`}>{grouped(count)} {name}</button>
+        <button key={name} type="button" onClick={() => onShow((where) => whereStatus(where, name))} className={`min-h-6 ${colour} underline-offset-4 hover:underline`} title={`Show the rows that are ${name}`}>{grouped(count)} {name}</button>
       ))}
-      {counts.warned > 0 && <span className="text-warn">{grouped(counts.warned)} with warnings</span>}
+      {counts.warned > 0 && <button type="button" onClick={() => onShow(whereWarned)} className="min-h-6 text-warn underline-offset-4 hover:underline" title="Show the rows with warnings">{grouped(counts.warned)} with warnings</button>}
     </p>
   );
 }
 
 function Provenance({ job }: { job: Job }) {
   const facts: [string, React.ReactNode][] = [
-    ["by", job.owner.name], ["created", <TimeText key="c" at={job.createdAt} />], ["finished", <TimeText key="f" at={job.finishedAt} fallback="not yet" />],
+    ["by", job.owner.name], ["created", <TimeText key="c" at={job.createdAt} />], ["started", <TimeText key="b" at={job.startedAt} fallback="not yet" />], ["finished", <TimeText key="f" at={job.finishedAt} fallback="not yet" />],
     ["cases", String(job.cases.length)], ["engine", job.engineVersion], ["constants", job.constantsVersion], ["spec", <span key="s" title={job.specHash}>{job.specHash.slice(0, 12)}</span>],
     ...(job.sampleSet ? [["sample set", `${job.sampleSet.name}, version ${job.sampleSet.version}`] as [string, React.ReactNode]] : []),
   ];

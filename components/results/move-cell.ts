@@ -22,3 +22,16 @@ export function moveCell(pressed: Pressed, from: Cell | null, extent: Extent): C
   })();
   return to && { row: Math.min(extent.rows - 1, Math.max(0, to.row)), column: Math.min(extent.columns - 1, Math.max(0, to.column)) };
 }
+
+/** Where a key leads from a header: to another column's header, down to the rows, or null for keys that are not the head's. */
+export function moveInHead(pressed: Pressed, column: number, columns: number): number | "rows" | null {
+  if (pressed.altKey || pressed.ctrlKey || pressed.metaKey) return null;
+  switch (pressed.key) {
+    case "ArrowDown": return "rows";
+    case "ArrowRight": return Math.min(columns - 1, column + 1);
+    case "ArrowLeft": return Math.max(0, column - 1);
+    case "Home": return 0;
+    case "End": return columns - 1;
+    default: return null;
+  }
+}

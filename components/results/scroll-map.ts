@@ -1,10 +1,10 @@
 /**
- * Between rows and pixels. Browsers clip an element at some ten million pixels, so a long table has a scrollbar that stands for it on a
+ * Between rows and pixels. Browsers clip an element between 17 and 33 million pixels, so a long table has a scrollbar that stands for it on a
  * scale: one pixel may be many rows. Wheel and keys still move by rows.
  */
 export const ROW_HEIGHT = 26;
-/** Well below every browser's limit. */
-const MOST_PIXELS = 8_000_000;
+/** Below every browser's limit. A million rows are then scaled by less than two, so that a finger still moves by rows. */
+const MOST_PIXELS = 15_000_000;
 
 export interface ScrollMap {
   /** Pixels the rows take in the scrolling box. */

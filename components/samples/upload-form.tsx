@@ -50,7 +50,9 @@ export function UploadForm({ set = null }: { set?: { id: string; name: string; v
         <div onDragOver={(event) => { event.preventDefault(); setOver(true); }} onDragLeave={() => setOver(false)} onDrop={onDrop}
           className={`flex flex-col gap-2 rounded border border-dashed px-4 py-6 text-sm ${isOver ? "border-accent bg-select" : "border-line bg-raised"}`}>
           <label htmlFor={id} className="text-dim">File, chosen here or dropped</label>
-          <input ref={input} id={id} type="file" accept=".csv,.txt,.tsv,.json,text/csv,application/json" onChange={(event) => take(event.target.files?.[0])} className="max-w-full text-ink file:mr-3 file:min-h-8 file:rounded file:border file:border-line file:bg-page file:px-3 file:text-ink" />
+          <input ref={input} id={id} type="file" accept=".csv,.txt,.tsv,.json,text/csv,application/json" onChange={(event) => take(event.target.files?.[0])}
+            // Emptied first, so that the same file, mended, can be chosen again.
+            onClick={(event) => { event.currentTarget.value = ""; }} className="max-w-full text-ink file:mr-3 file:min-h-8 file:rounded file:border file:border-line file:bg-page file:px-3 file:text-ink" />
           {file && <p className="text-dim">{file.name}, {Math.max(1, Math.round(file.size / 1024))} KiB</p>}
         </div>
         {!set && <Field label="Name" required maxLength={120} value={name} onChange={(event) => setName(event.target.value)} />}

@@ -1,6 +1,7 @@
 "use client";
 import Link from "next/link";
 import { usePathname } from "next/navigation";
+import { useEffect, useRef } from "react";
 import { KeycapRow } from "@/components/ui/keycaps";
 import { Wordmark } from "@/components/ui/wordmark";
 import { PAGES } from "@/lib/commands/catalog/screen";
@@ -20,12 +21,15 @@ function isHere(path: string, here: string): boolean {
 export function TopBar({ name, role }: { name: string; role: Role }) {
   const here = usePathname();
   const caps = useKeycaps(comboOf("palette"));
+  const list = useRef<HTMLUListElement>(null);
+  // On a narrow screen the bar scrolls: the page one is on stands in sight.
+  useEffect(() => { list.current?.querySelector("[aria-current]")?.scrollIntoView({ inline: "nearest", block: "nearest" }); }, [here]);
   const pages = PAGES.filter((page) => SHOWN.includes(page.word) && (!page.role || page.role === role));
   return (
-    <header className="flex items-center gap-x-4 border-b border-line bg-raised px-4 text-sm max-sm:flex-wrap max-sm:gap-y-0">
+    <header className="flex items-center gap-x-4 border-b border-line bg-raised px-4 text-sm print:hidden max-sm:flex-wrap max-sm:gap-y-0">
       <Link href="/" className="flex min-h-10 items-center" aria-label="Tufa, the console"><Wordmark /></Link>
       <nav aria-label="Pages" className="min-w-0 flex-1 overflow-x-auto max-sm:order-last max-sm:-mx-4 max-sm:basis-full max-sm:border-t max-sm:border-line max-sm:px-4">
-        <ul className="flex gap-x-1">
+        <ul ref={list} className="flex gap-x-1">
           {pages.map((page) => (
             <li key={page.path}>
               <Link href={page.path} aria-current={isHere(page.path, here) ? "page" : undefined}

@@ -13,11 +13,24 @@ const SAYS: Record<Scope, string> = {
 const DAYS = [30, 90, 180, 365] as const;
 const DAY_MS = 86_400_000;
 
+/** A day of the reader's calendar as a date field writes it. */
+const dayText = (at: number): string => { const day = new Date(at); return [day.getFullYear(), day.getMonth() + 1, day.getDate()].map((part) => String(part).padStart(2, "0")).join("-"); };
+
+/** When the token ends; null for never. */
+function expiryOf(life: string, day: string): string | null {
+  if (life === "never") return null;
+  // To the end of the chosen day, in the reader's own time.
+  if (life === "date") return new Date(`${day}T23:59:59`).toISOString();
+  // A minute short of the day: the server counts to the second, and a year is its limit.
+  return new Date(Date.now() + Number(life) * DAY_MS - 60_000).toISOString();
+}
+
 /** Name, scopes and life of a new token. All but the administrator's scope are ticked. */
 export function NewTokenForm({ scopes, onMade }: { scopes: readonly Scope[]; onMade: (token: TokenCreated) => void }) {
   const [name, setName] = useState("");
   const [chosen, setChosen] = useState<readonly Scope[]>(scopes.filter((scope) => scope !== "admin"));
-  const [days, setDays] = useState("90");
+  const [life, setLife] = useState("90");
+  const [day, setDay] = useState("");
   const [isBusy, setBusy] = useState(false);
   const [failure, setFailure] = useState("");
   const onSubmit = (event: FormEvent): void => {
@@ -25,15 +38,14 @@ export function NewTokenForm({ scopes, onMade }: { scopes: readonly Scope[]; onM
     if (chosen.length === 0) { setFailure("Choose at least one scope."); return; }
     setBusy(true);
     setFailure("");
-    // A minute short of the day: the server counts to the second, and a year is its limit.
-    const expiresAt = days === "never" ? null : new Date(Date.now() + Number(days) * DAY_MS - 60_000).toISOString();
-    createToken({ name: name.trim(), scopes: [...chosen], expiresAt }).then((token) => { setName(""); onMade(token); }, (error: unknown) => setFailure(error instanceof Error ? error.message : "The token was not made.")).finally(() => setBusy(false));
+    createToken({ name: name.trim(), scopes: [...chosen], expiresAt: expiryOf(life, day) }).then((token) => { setName(""); onMade(token); }, (error: unknown) => setFailure(error instanceof Error ? error.message : "The token was not made.")).finally(() => setBusy(false));
   };
   return (
     <form onSubmit={onSubmit} className="flex flex-col gap-3">
       <div className="flex flex-wrap items-start gap-4">
         <Field label="Name" required maxLength={80} value={name} onChange={(event) => setName(event.target.value)} placeholder="nightly batch" className="w-72 max-w-full" />
-        <SelectField label="Expires" value={days} onChange={(event) => setDays(event.target.value)}>{DAYS.map((each) => <option key={each} value={each}>in {each} days</option>)}<option value="never">never</option></SelectField>
+        <SelectField label="Expires" value={life} onChange={(event) => setLife(event.target.value)}>{DAYS.map((each) => <option key={each} value={each}>in {each} days</option>)}<option value="date">on a date</option><option value="never">never</option></SelectField>
+        {life === "date" && <Field label="Last day" type="date" required min={dayText(Date.now())} max={dayText(Date.now() + 364 * DAY_MS)} value={day} onChange={(event) => setDay(event.target.value)} />}
       </div>
       <fieldset className="flex flex-col text-sm">
         <legend className="mb-1 text-dim">It may</legend>

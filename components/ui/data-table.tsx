@@ -16,13 +16,13 @@ export function DataTable<T>({ label, columns, items, keyOf, empty }: { label: s
       <table className="w-full text-sm">
         <thead>
           <tr className="border-b border-line text-left text-xs text-dim">
-            {columns.map((column) => <th key={column.title} scope="col" className={`whitespace-nowrap py-1.5 pr-4 font-normal ${column.isRight ? "text-right" : ""}`}>{column.title}</th>)}
+            {columns.map((column) => <th key={column.title} scope="col" className={`whitespace-nowrap py-1.5 pr-4 font-normal ${column.isRight ? "text-right" : ""}`}>{column.title || <span className="sr-only">what can be done</span>}</th>)}
           </tr>
         </thead>
         <tbody>
           {items.map((item) => (
             <tr key={keyOf(item)} className="border-b border-line/50 align-baseline hover:bg-raised">
-              {columns.map((column) => <td key={column.title} className={`py-1.5 pr-4 ${column.isRight ? "text-right tabular-nums" : ""} ${column.className ?? ""}`}>{column.cell(item)}</td>)}
+              {columns.map((column) => <td key={column.title} className={`py-1.5 pr-4 ${column.isRight ? "whitespace-nowrap text-right tabular-nums" : ""} ${column.className ?? ""}`}>{column.cell(item)}</td>)}
             </tr>
           ))}
         </tbody>

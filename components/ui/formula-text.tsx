@@ -25,3 +25,17 @@ export const FormulaText = memo(function FormulaText({ children }: { children: s
   if (at < children.length) parts.push(children.slice(at));
   return <>{parts}</>;
 });
+
+/** A reaction or a bare formula, every count in it set as one: "CaSO4·2H2O = Ca^2+ + SO4^2- + 2 H2O". */
+export function ReactionText({ children }: { children: string }) {
+  return <>{children.split(" ").map((term, index) => <span key={index}>{index > 0 && " "}{/^(\d+|[=+])$/.test(term) ? term : reactant(term)}</span>)}</>;
+}
+
+function reactant(term: string): ReactNode {
+  const [body, charge] = term.split("^");
+  return (
+    <span className="whitespace-nowrap">
+      {body.split(/(?<=[A-Za-z)])(\d+)/).map((part, index) => (index % 2 === 1 ? <sub key={index}>{part}</sub> : part))}{charge && <sup>{charge.replace("-", "−")}</sup>}
+    </span>
+  );
+}

@@ -17,7 +17,7 @@ export function Page({ title, actions, lead, children, isWide = false }: { title
 /** A part of a page under its own heading. */
 export function Section({ title, actions, children }: { title: string; actions?: ReactNode; children: ReactNode }) {
   return (
-    <section aria-label={title} className="flex flex-col gap-3">
+    <section className="flex flex-col gap-3">
       <div className="flex flex-wrap items-center gap-x-4 gap-y-2 border-b border-line pb-1"><h2 className="text-base font-semibold">{title}</h2>{actions && <div className="ml-auto flex flex-wrap gap-2">{actions}</div>}</div>
       {children}
     </section>

@@ -11,7 +11,7 @@ export function ShownOnce({ title, text, onClose }: { title: string; text: strin
     <div role="group" aria-label={title} className="flex flex-col gap-2 rounded border border-accent bg-raised p-4 text-sm">
       <p>{title}</p>
       <div className="flex flex-wrap gap-2">
-        <input ref={input} readOnly value={text} aria-label={title} className="min-h-9 min-w-0 flex-1 basis-80 rounded border border-line bg-sunken px-2" />
+        <input ref={input} readOnly value={text} aria-label={title} className="min-h-9 min-w-0 flex-1 basis-80 rounded border border-faint bg-sunken px-2" />
         <CopyButton text={text} />
         <Button onClick={onClose}>I have it</Button>
       </div>

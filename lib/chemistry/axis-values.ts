@@ -45,7 +45,7 @@ export function readAxis(axis: SpecAxis, units: Readonly<Record<string, string>>
   if (problems.length > 0) return problems;
   const shownOf = (each: Quantity): number => (each.unit === split.unit && each.as === split.as ? each.value : (each.base - scale.offset) / scale.factor);
   const shown = axis.values ? Float64Array.from(read, shownOf) : spread(shownOf(read[0]), shownOf(read[1]), axis.points ?? 2, axis.scale === "log");
-  return { field: axis.field, unit: field.kind === "number" ? "" : unit, shown, base: shown.map((value) => toBase(value, scale)), isDryFraction: scale.isDryFraction };
+  return { field: axis.field, unit: field.kind === "number" ? "" : unit.replace(/^u(?=g|mol|eq|S|atm)/, "µ"), shown, base: shown.map((value) => toBase(value, scale)), isDryFraction: scale.isDryFraction };
 }
 
 const toBase = (value: number, scale: UnitScale): number => value * scale.factor + scale.offset;

@@ -44,7 +44,8 @@ function fieldProblem(axis: SpecAxis, cases: readonly SpecCase[], axes: readonly
 /** Why no case would notice the axis, or null where one does. */
 function idleReason(field: string, cases: readonly SpecCase[]): string | null {
   const closesOn = (fact: string): boolean => cases.some((each) => each.close?.some((one) => factName(one) === fact));
-  const hasGas = cases.some((each) => each.react !== undefined && each.react.gas !== "closed");
+  // Without a word on the gas, a reaction is open only where the case closes on pCO2 already.
+  const hasGas = cases.some((each) => each.react?.gas === "open");
   if (field === "pCO2") return closesOn("pCO2") || hasGas ? null : "no case closes on pCO2 or is open to it";
   if (["pH", "ANC", "alkalinity", "DIC"].includes(field)) return closesOn(field) ? null : `no case closes on ${field}`;
   if (field === "pHTemperature") return closesOn("pH") ? null : "no case closes on pH";

@@ -6,6 +6,7 @@ import type { Issue } from "@/lib/errors";
 import { waterRowSchema } from "@/lib/schemas/job-spec";
 
 const ROW_KEYS = Object.keys(waterRowSchema.shape);
+const ROW_KEY_SET: ReadonlySet<string> = new Set(ROW_KEYS);
 const QUANTITY_KEYS = ["value", "unit", "as", "below", "sd", "method", "fraction", "log10"];
 
 /**
@@ -14,11 +15,18 @@ const QUANTITY_KEYS = ["value", "unit", "as", "below", "sd", "method", "fraction
  */
 export function checkRows(rows: readonly unknown[], units: Readonly<Record<string, string>>, limit: number): Issue[] {
   const issues: Issue[] = [];
-  for (let index = 0; index < rows.length && issues.length < limit; index++) checkRow(rows[index], index, units, issues);
+  const context = { units, issues, limit };
+  for (let index = 0; index < rows.length && issues.length < limit; index++) checkRow(rows[index], index, context);
   return issues;
 }
 
-function checkRow(row: unknown, index: number, units: Readonly<Record<string, string>>, issues: Issue[]): void {
+interface Context { units: Readonly<Record<string, string>>; issues: Issue[]; limit: number }
+
+/** Texts up to here are short enough for any column of text. */
+const SURE_LENGTH = 40;
+
+function checkRow(row: unknown, index: number, context: Context): void {
+  const { units, issues, limit } = context;
   const path = ["waters", "rows", index];
   if (typeof row !== "object" || row === null || Array.isArray(row)) {
     issues.push({ pointer: pointerTo(path), code: "wrong-type", message: "A water is an object of columns and values.", value: shorten(row), remedy: "Write { \"id\": …, \"Ca\": … }." });
@@ -27,12 +35,13 @@ function checkRow(row: unknown, index: number, units: Readonly<Record<string, st
   const given = row as Record<string, unknown>;
   let needsSchema = false;
   for (const key of Object.keys(given)) {
+    if (issues.length >= limit) return;
     const value = given[key];
-    if (value === null) { if (!ROW_KEYS.includes(key)) issues.push(issueOfUnknownKey(path, key, ROW_KEYS)); continue; }
     const field = ROW_FIELDS.get(key);
+    if (!field && !ROW_KEY_SET.has(key)) { issues.push(issueOfUnknownKey(path, key, ROW_KEYS)); continue; }
+    if (value === null) continue;
     if (!field) {
-      if (ROW_KEYS.includes(key)) needsSchema ||= typeof value !== "string" || value.length > 40;
-      else issues.push(issueOfUnknownKey(path, key, ROW_KEYS));
+      needsSchema ||= !(typeof value === "string" ? value.length <= SURE_LENGTH : key === "id" && Number.isFinite(value));
       continue;
     }
     if (typeof value === "object") needsSchema = true;

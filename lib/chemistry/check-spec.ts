@@ -4,14 +4,13 @@ import { checkCases } from "@/lib/chemistry/check-cases";
 import { checkReport } from "@/lib/chemistry/check-report";
 import { checkRows } from "@/lib/chemistry/check-rows";
 import { ROW_FIELDS } from "@/lib/chemistry/fields";
-import { issuesOf } from "@/lib/chemistry/spec-issues";
+import { issuesOf, MOST_ISSUES } from "@/lib/chemistry/spec-issues";
 import { splitUnit, unitScale } from "@/lib/chemistry/units";
 import type { Issue } from "@/lib/errors";
 import { type JobSpec, jobSpecJsonSchema, jobSpecSchema, WATERS_PER_SPEC } from "@/lib/schemas/job-spec";
 import { nearestName } from "@/lib/schemas/nearest-name";
 
-/** Faults answered at once; a document with more has the same one many times over. */
-export const MOST_ISSUES = 100;
+export { MOST_ISSUES } from "@/lib/chemistry/spec-issues";
 
 export interface CheckedSpec {
   /** The document as a spec; null where its shape is no spec's. It may still have issues. */
@@ -29,15 +28,32 @@ export function checkSpec(document: unknown): CheckedSpec {
   const issues = parsed.success ? [] : issuesOf(parsed.error, head, (path) => keysAt(path.map(String)));
   const waters = watersOf(document);
   const units = unitsOf(waters);
-  const wrongUnits = unitIssues(units);
-  // A wrong default unit is one fault, not one for each of its rows.
-  for (const { pointer } of wrongUnits) delete units[pointer.slice("/waters/units/".length)];
-  if (waters) issues.push(...watersIssues(waters, rows), ...wrongUnits);
-  if (rows) issues.push(...checkRows(rows.slice(0, WATERS_PER_SPEC), units, MOST_ISSUES));
+  if (waters) issues.push(...watersIssues(waters, rows));
+  issues.push(...checkTable((rows ?? []).slice(0, WATERS_PER_SPEC), units));
   issues.push(...partIssues(head, units));
   if (!parsed.success) return { spec: null, issues: limit(issues) };
   const spec = rows ? { ...parsed.data, waters: { ...parsed.data.waters, rows: rows as JobSpec["waters"]["rows"] } } : parsed.data;
   return { spec, issues: limit(issues) };
+}
+
+/**
+ * A spec that was checked before it was stored. Its rows are taken as they are: looking through 100,000 of them again costs half a second
+ * at each place that reads it. Throws where the rest is no spec.
+ */
+export function readStoredSpec(document: unknown): JobSpec {
+  const { head, rows } = detachRows(document);
+  const spec = jobSpecSchema.parse(head);
+  return rows ? { ...spec, waters: { ...spec.waters, rows: rows as JobSpec["waters"]["rows"] } } : spec;
+}
+
+/**
+ * Faults of waters and their default units, at most MOST_ISSUES of them, with pointers below /waters. Any number of rows.
+ * A wrong unit is one fault, not one for each of its rows: it is taken out of `units`, which the caller owns.
+ */
+export function checkTable(rows: readonly unknown[], units: Record<string, string>): Issue[] {
+  const wrong = unitIssues(units);
+  for (const { pointer } of wrong) delete units[pointer.slice("/waters/units/".length)];
+  return limit([...wrong, ...checkRows(rows, units, MOST_ISSUES)]);
 }
 
 /** Faults of cases, axes and report beyond their shape; each part is looked at though another one is no good. */
@@ -93,8 +109,11 @@ function watersIssues(waters: Plain, rows: unknown[] | null): Issue[] {
   return [];
 }
 
+/** More columns than there are fields name most of them wrongly. */
+const MOST_UNITS = 2 * MOST_ISSUES;
+
 function unitIssues(units: Record<string, string>): Issue[] {
-  return Object.entries(units).flatMap(([key, text]): Issue[] => {
+  return limit(Object.entries(units).slice(0, MOST_UNITS).flatMap(([key, text]): Issue[] => {
     const pointer = `/waters/units/${key.replaceAll("~", "~0").replaceAll("/", "~1")}`;
     const field = ROW_FIELDS.get(key);
     if (!field) {
@@ -104,7 +123,7 @@ function unitIssues(units: Record<string, string>): Issue[] {
     const { unit, as } = splitUnit(text);
     const scale = unitScale(field, unit, as);
     return "message" in scale ? [{ pointer, code: "unknown-unit", message: scale.message, value: text, remedy: scale.remedy }] : [];
-  });
+  }));
 }
 
 interface SchemaNode { properties?: Record<string, SchemaNode>; items?: SchemaNode; additionalProperties?: SchemaNode | boolean; propertyNames?: { enum?: string[] }; anyOf?: SchemaNode[] }

@@ -3,8 +3,9 @@
  * place, so that faults can be shown under it. Pure; the prompt calls it at each keystroke.
  */
 import { ANALYTES } from "@/lib/chemistry/data";
-import type { Analyte } from "@/lib/chemistry/data/types";
 import { type Field, ROW_FIELDS } from "@/lib/chemistry/fields";
+import { findName, type Name, NAMES } from "@/lib/chemistry/line-names";
+import { isBreak, isNumber, lineWords, type Word } from "@/lib/chemistry/line-words";
 import { isProblem, rangeProblem, readQuantity } from "@/lib/chemistry/quantity";
 import type { CarbonFact, ProtonFact } from "@/lib/chemistry/types";
 import { spellUnit, splitUnit, unitScale, unitsOf } from "@/lib/chemistry/units";
@@ -32,56 +33,8 @@ export interface ParsedLine {
 const AMBIENT_CO2 = "420 ppm";
 const ASSUMED_CELSIUS = 25;
 
-/** Names of what is no analyte. */
-const CONDITION_NAMES: Record<string, string> = {
-  ph: "pH", t: "temperature", temp: "temperature", temperature: "temperature", pco2: "pCO2", co2: "pCO2", altitude: "altitude", elevation: "altitude",
-  pressure: "pressure", conductivity: "conductivity", ec: "conductivity", cond: "conductivity",
-};
 const FILLERS = new Set(["at", "of", "is", "and", "with", "=", ":", "a", "the"]);
 
-interface Name { field: Field; basis: string | null; unit: string | null }
-
-const findAnalyte = (lower: string): Analyte | undefined => ANALYTES.find((each) => each.key.toLowerCase() === lower || each.synonyms.includes(lower));
-
-/** The field that a name means, with the basis some names imply: "NO3-N", "silica", "bicarbonate". */
-function findName(text: string): Name | null {
-  const lower = text.toLowerCase();
-  const condition = Object.hasOwn(CONDITION_NAMES, lower) ? ROW_FIELDS.get(CONDITION_NAMES[lower]) : undefined;
-  if (condition) return { field: condition, basis: null, unit: null };
-  const dashed = /^(.+?)-(n|p|s|si|c)$/i.exec(text);
-  const analyte = findAnalyte(lower) ?? (dashed ? findAnalyte(dashed[1].toLowerCase()) : undefined);
-  if (!analyte) return null;
-  const field = ROW_FIELDS.get(analyte.key)!;
-  if (dashed && !findAnalyte(lower)) return { field, basis: dashed[2].charAt(0).toUpperCase() + dashed[2].slice(1).toLowerCase(), unit: null };
-  const basis = analyte.namedBasis?.[lower] ?? null;
-  return { field, basis, unit: basis ? "mg/L" : null };
-}
-
-/** Every name that may begin a part, for suggestions. */
-const NAMES: readonly string[] = [...ANALYTES.flatMap((each) => [each.key, ...each.synonyms]), "pH", "temperature", "pCO2", "altitude", "pressure", "conductivity"];
-
-interface Word { text: string; start: number; end: number }
-
-/** Words, with commas, semicolons and line ends apart; a comma between two digits is a decimal sign, a number lets go of its unit. */
-function words(line: string): Word[] {
-  const found: Word[] = [];
-  for (const match of line.matchAll(/[;\n]|,(?!\d)|(?<!\d),|(?:[^\s,;]|(?<=\d),(?=\d))+/g)) {
-    const glued = /^([<≤]?[+\-−]?(?:\d+[.,]?\d*|[.,]\d+)(?:e[+-]?\d+)?)([a-zµμ°%].*)$/i.exec(match[0]);
-    const named = /^([A-Za-z][\w+-]*)([=:])(.*)$/.exec(match[0]);
-    const at = match.index;
-    if (glued) found.push({ text: glued[1], start: at, end: at + glued[1].length }, { text: glued[2], start: at + glued[1].length, end: at + match[0].length });
-    else if (named) {
-      found.push({ text: named[1], start: at, end: at + named[1].length });
-      const from = at + named[1].length + 1;
-      if (named[3]) found.push({ text: named[3], start: from, end: from + named[3].length });
-    } else found.push({ text: match[0], start: at, end: at + match[0].length });
-  }
-  return found;
-}
-
-const isBreak = (word: Word): boolean => /^[,;\n]$/.test(word.text);
-const NUMBER = /^[<≤]?[+\-−]?(?:\d+[.,]?\d*|[.,]\d+)(?:e[+-]?\d+)?$/i;
-const isNumber = (word: Word | undefined): boolean => word !== undefined && NUMBER.test(word.text);
 const numberText = (text: string): string => text.replace(",", ".").replace("−", "-");
 
 /** Reads a line. Never throws: what cannot be read is a token with a problem, and the rest is read all the same. */
@@ -90,7 +43,7 @@ export function parseWaterLine(line: string): ParsedLine {
   const row: Record<string, string | number> = {};
   let part: Word[] = [];
   const finish = (): void => { readPart(part, row, tokens); part = []; };
-  for (const word of words(line)) {
+  for (const word of lineWords(line)) {
     if (isBreak(word)) { finish(); tokens.push({ start: word.start, end: word.end, kind: "separator" }); } else part.push(word);
   }
   finish();
@@ -98,10 +51,13 @@ export function parseWaterLine(line: string): ParsedLine {
   return { tokens, row };
 }
 
+/** No statement has as many words; a long paste is thus read in linear time. */
+const LONGEST_STATEMENT = 40;
+
 /** A part may hold several statements without commas: "Ca 62 mg/L Mg 6 mg/L pH 7.9". */
 function readPart(part: readonly Word[], row: ParsedLine["row"], tokens: LineToken[]): void {
   let at = 0;
-  while (at < part.length) at += readStatement(part.slice(at), row, tokens);
+  while (at < part.length) at += readStatement(part.slice(at, at + LONGEST_STATEMENT), row, tokens);
 }
 
 const mark = (word: Word, kind: LineToken["kind"], more: Partial<LineToken> = {}): LineToken => ({ start: word.start, end: word.end, kind, ...more });
@@ -115,11 +71,16 @@ function readStatement(part: readonly Word[], row: ParsedLine["row"], tokens: Li
   const span: Word = { text: "", start: part[0].start, end: part[named.used - 1].end };
   const { field } = named.name;
   const written = part.slice(0, named.used).map((word) => word.text).join(" ");
-  tokens.push(mark(span, "analyte", written.toLowerCase() === field.key.toLowerCase() ? {} : { shown: field.key }));
+  const place = mark(span, "analyte", written.toLowerCase() === field.key.toLowerCase() ? {} : { shown: field.key });
+  tokens.push(place);
   let at = named.used;
   while (part[at] && FILLERS.has(part[at].text.toLowerCase())) tokens.push(mark(part[at++], "separator"));
   if (!isNumber(part[at])) {
-    const place = tokens.find((token) => token.start === span.start)!;
+    const unit = unitBehind(part.slice(at), field);
+    if (unit.isKnown) {
+      tokens.push(mark({ text: "", start: part[at].start, end: part[at + unit.used - 1].end }, "unit"));
+      at += unit.used;
+    }
     place.problem = `A number follows ${field.key}${field.kind === "number" ? ": for example 7.9" : `: for example 12 ${unitsOf(field)[0]}`}.`;
     return at;
   }
@@ -134,10 +95,13 @@ function longestName(part: readonly Word[]): { name: Name; used: number } | null
   return null;
 }
 
+/** "1,234.5" as "1234.5"; a comma is a decimal sign here. */
+const withoutThousands = (text: string): string | null => (/^\d{1,3}(,\d{3})+(\.\d+)?$/.test(text) ? text.replaceAll(",", "") : null);
+
 /** A word that is no name: it is marked, and what belongs to it is passed over, so that one slip makes one fault. */
 function skipUnknown(part: readonly Word[], tokens: LineToken[]): number {
   const text = part[0].text;
-  const suggestion = nearestName(text, NAMES) ?? undefined;
+  const suggestion = withoutThousands(text) ?? nearestName(text, NAMES) ?? undefined;
   tokens.push(mark(part[0], "unknown", { suggestion, problem: `“${text}” is neither an analyte nor a condition.` }));
   let at = 1;
   if (isNumber(part[at])) tokens.push(mark(part[at++], "number"));
@@ -145,18 +109,42 @@ function skipUnknown(part: readonly Word[], tokens: LineToken[]): number {
   return at;
 }
 
-/** "8.4 °C" by itself is the temperature; any other number without a name is asked about. */
+/** "8.4 °C" by itself is the temperature, and a name may come behind: "62 mg/L Ca", "7.9 pH". Any other number is asked about. */
 function readNameless(part: readonly Word[], row: ParsedLine["row"], tokens: LineToken[]): number {
-  if (part[1] && /^(°|°c|degc|c|°C)$/i.test(part[1].text)) return readValue(part, { field: ROW_FIELDS.get("temperature")!, basis: null, unit: null }, row, tokens);
-  const after = part[1] ? longestName(part.slice(2)) : null;
-  // "62 mg/L Ca": the name may come behind.
-  if (after && part.length === 2 + after.used) {
-    const read = readValue(part, after.name, row, tokens);
-    if (read === 2) tokens.push(mark({ text: "", start: part[2].start, end: part[part.length - 1].end }, "analyte"));
-    return Math.max(read, part.length);
+  if (part[1] && isCelsius(part)) return readValue(part, { field: ROW_FIELDS.get("temperature")!, basis: null, unit: null }, row, tokens);
+  const behind = nameBehind(part);
+  if (behind) {
+    const end = behind.from + behind.used;
+    readValue(part.slice(0, behind.from), behind.name, row, tokens);
+    tokens.push(mark({ text: "", start: part[behind.from].start, end: part[end - 1].end }, "analyte"));
+    return end;
   }
   tokens.push(mark(part[0], "unknown", { problem: "A number without a name: what was measured? For example Ca 62 mg/L, or 8.4 °C." }));
   return part[1] && !isNumber(part[1]) && !longestName(part.slice(1)) ? (tokens.push(mark(part[1], "unit")), 2) : 1;
+}
+
+/** A K behind a number is potassium, unless nothing follows it and the number is a temperature of water in kelvin. */
+function isCelsius(part: readonly Word[]): boolean {
+  if (/^(°|°c|degc|c)$/i.test(part[1].text)) return true;
+  return part[1].text === "K" && !part[2] && Number(numberText(part[0].text)) >= 273.15;
+}
+
+function nameBehind(part: readonly Word[]): { name: Name; from: number; used: number } | null {
+  for (let from = 1; from < Math.min(6, part.length); from++) {
+    if (isNumber(part[from])) return null;
+    const named = longestName(part.slice(from));
+    if (!named || isNumber(part[from + named.used])) continue;
+    const unit = unitBehind(part.slice(1, from), named.name.field);
+    if (from === 1 ? named.name.field.kind === "number" : unit.isKnown && unit.used === from - 1) return { ...named, from };
+  }
+  return null;
+}
+
+/** What to write for a unit that a field does not take: the same without its basis, the same with one, or the most alike. */
+function unitInstead(spelled: string, field: Field): string {
+  if (!("message" in unitScale(field, spelled, null))) return spelled;
+  const options = unitsOf(field);
+  return options.find((each) => each.startsWith(`${spelled} as `)) ?? nearestName(spelled, options) ?? options[0];
 }
 
 /** Number, unit and basis. @returns how many words they are. */
@@ -165,7 +153,8 @@ function readValue(part: readonly Word[], name: Name, row: ParsedLine["row"], to
   const number = part[0];
   const { used, unit, as } = unitBehind(part.slice(1), field);
   const span: Word | null = used > 0 ? { text: "", start: part[1].start, end: part[used].end } : null;
-  tokens.push(mark(number, "number"));
+  const place = mark(number, "number");
+  tokens.push(place);
   if (span) tokens.push(mark(span, "unit"));
   const last = tokens[tokens.length - 1];
   const spelled = unit ?? name.unit ?? (name.basis ? field.defaultUnit : "");
@@ -173,29 +162,35 @@ function readValue(part: readonly Word[], name: Name, row: ParsedLine["row"], to
   const text = [numberText(number.text), spelled, basis && !/eq\//.test(spelled) ? `as ${basis}` : ""].filter(Boolean).join(" ");
   const read = readQuantity(text, field);
   if (isProblem(read)) {
-    const options = unitsOf(field);
     last.problem = `${read.message} ${read.remedy}`;
-    if (span) last.suggestion = nearestName(spelled, options) ?? options[0];
+    if (span) last.suggestion = unitInstead(spelled, field);
     return 1 + used;
   }
   const range = rangeProblem(read.base, field);
-  if (range) tokens.find((token) => token.start === number.start)!.problem = range.message;
-  else if (Object.hasOwn(row, field.key)) tokens.find((token) => token.start === number.start)!.problem = `${field.key} is given twice.`;
-  else row[field.key] = field.kind === "number" ? read.value : field.kind === "temperature" ? read.base : spelled === "" ? `${numberText(number.text)} ${field.defaultUnit}` : text;
+  if (range) place.problem = range.message;
+  else if (Object.hasOwn(row, field.key)) place.problem = `${field.key} is given twice.`;
+  else row[field.key] = field.kind === "number" ? read.value : field.kind === "temperature" ? Number(read.base.toFixed(9)) : spelled === "" ? `${numberText(number.text)} ${field.defaultUnit}` : text;
   return 1 + used;
 }
 
+interface UnitRead { used: number; unit: string | null; as: string | null; isKnown: boolean }
+
 /** The unit behind a number, with "as N" or a bare formula for a basis. One word that is no name counts as a unit meant. */
-function unitBehind(rest: readonly Word[], field: Field): { used: number; unit: string | null; as: string | null } {
-  if (!rest[0]) return { used: 0, unit: null, as: null };
+function unitBehind(rest: readonly Word[], field: Field): UnitRead {
+  const none = { used: 0, unit: null, as: null, isKnown: false };
+  if (!rest[0]) return none;
   for (let count = Math.min(4, rest.length); count > 0; count--) {
     const { unit, as } = splitUnit(rest.slice(0, count).map((word) => word.text).join(" "));
-    if (unit !== "" && !("message" in unitScale(field, unit, as))) return { used: count, unit, as };
+    if (unit === "" || "message" in unitScale(field, unit, as)) continue;
+    const basis = as === null && rest[count]?.text.toLowerCase() === "as" ? rest[count + 1] : undefined;
+    // A basis that the longer readings did not take is part of the unit all the same.
+    return basis ? { used: count + 2, unit, as: basis.text, isKnown: false } : { used: count, unit, as, isKnown: true };
   }
   // Words such as "mg/L" that this field does not take are still its unit; a name begins the next statement.
-  if (isNumber(rest[0]) || FILLERS.has(rest[0].text.toLowerCase()) || longestName(rest)) return { used: 0, unit: null, as: null };
+  const isHalfUnit = rest[0].text === "mg" && !isNumber(rest[1]);
+  if (isNumber(rest[0]) || FILLERS.has(rest[0].text.toLowerCase()) || !isHalfUnit && longestName(rest)) return none;
   const hasBasis = rest[1]?.text.toLowerCase() === "as" && rest[2];
-  return { used: hasBasis ? 3 : 1, unit: spellUnit(rest[0].text), as: hasBasis ? rest[2].text : null };
+  return { used: hasBasis ? 3 : 1, unit: spellUnit(rest[0].text), as: hasBasis ? rest[2].text : null, isKnown: false };
 }
 
 type FactPair = readonly [ProtonFact | CarbonFact, ProtonFact | CarbonFact];

@@ -3,6 +3,7 @@ import type { SpecCase } from "@/lib/chemistry/effective-cases";
 import { type Field, GAS, ROW_FIELDS, SITES, supplyField } from "@/lib/chemistry/fields";
 import { ANALYTES, ATOMIC_MASSES, SOLIDS } from "@/lib/chemistry/data";
 import { isProblem, type Quantity, readQuantity } from "@/lib/chemistry/quantity";
+import { type BelowLimit, countedBase } from "@/lib/chemistry/resolve-water";
 import type { Pressure, ResolvedCase, ResolvedSolid } from "@/lib/chemistry/types";
 
 type Units = Readonly<Record<string, string>>;
@@ -34,13 +35,13 @@ export function organicOf({ organic }: SpecCase): ResolvedCase["organic"] {
 }
 
 /** @param kase with its `like` followed, of a checked spec. */
-export function resolveCase(kase: SpecCase, units: Units): ResolvedCase {
+export function resolveCase(kase: SpecCase, units: Units, belowLimit: BelowLimit): ResolvedCase {
   const facts = kase.close!.map((fact) => (typeof fact === "string" ? fact : "saturated" as const));
   const saturation = kase.close!.find((fact) => typeof fact === "object");
   return {
     name: kase.name,
     close: { facts: [facts[0], facts[1]], saturated: saturation ? { solid: saturation.saturated, SI: saturation.SI ?? 0 } : null },
-    given: givenOf(kase, units),
+    given: givenOf(kase, units, belowLimit),
     activity: kase.activity ?? "davies",
     organic: organicOf(kase),
     complexes: kase.complexes ?? "all",
@@ -49,9 +50,12 @@ export function resolveCase(kase: SpecCase, units: Units): ResolvedCase {
   };
 }
 
-function givenOf(kase: SpecCase, units: Units): ResolvedCase["given"] {
+function givenOf(kase: SpecCase, units: Units, belowLimit: BelowLimit): ResolvedCase["given"] {
   const given: ResolvedCase["given"] = {};
-  const read = (key: string, raw: unknown): Quantity => readChecked(raw, ROW_FIELDS.get(key)!, Object.hasOwn(units, key) ? units[key] : null);
+  const read = (key: string, raw: unknown): Quantity => {
+    const quantity = readChecked(raw, ROW_FIELDS.get(key)!, Object.hasOwn(units, key) ? units[key] : null);
+    return { ...quantity, base: countedBase(quantity, belowLimit) };
+  };
   for (const key of ["temperature", "pH", "pHTemperature", "altitude", "alkalinity", "ANC", "DIC", "DOC"] as const) {
     if (kase[key] !== undefined) given[key] = read(key, kase[key]).base;
   }

@@ -27,7 +27,7 @@ export function resolveJob(spec: JobSpec, rows: readonly Readonly<Record<string,
   const belowLimit = spec.waters.belowLimit ?? "half";
   return {
     waters: rows.map((row, index) => resolveWater(row, index, units, belowLimit)),
-    cases: effectiveCases(spec.cases).map((kase) => resolveCase(kase, units)),
+    cases: effectiveCases(spec.cases).map((kase) => resolveCase(kase, units, belowLimit)),
     axes: (spec.vary ?? []).map((axis) => {
       const read = readAxis(axis, units);
       if (Array.isArray(read)) throw new Error(`axis ${axis.field}: ${read[0].message}`);

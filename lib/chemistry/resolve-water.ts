@@ -1,16 +1,19 @@
 /** A row from words and units to numbers in base units, with the faults of its values. */
 import { ANALYTES } from "@/lib/chemistry/data";
-import { ROW_FIELDS } from "@/lib/chemistry/fields";
+import { type Field, ROW_FIELDS } from "@/lib/chemistry/fields";
 import { isProblem, type Quantity, readQuantity, shorten } from "@/lib/chemistry/quantity";
 import type { ResolvedWater, RowFault } from "@/lib/chemistry/types";
 
 export type BelowLimit = "half" | "zero" | "limit";
 const COUNTED: Record<BelowLimit, number> = { half: 0.5, zero: 0, limit: 1 };
 
+/** What a quantity counts as, in base units: a value below its limit as the spec says. */
+export const countedBase = ({ base, isBelow }: Quantity, belowLimit: BelowLimit): number => (isBelow ? base * COUNTED[belowLimit] : base);
+
 const TOTALS: ReadonlySet<string> = new Set(ANALYTES.filter(({ kind }) => kind === "total").map(({ key }) => key));
 const PLAIN = new Set(["temperature", "pH", "pHTemperature", "altitude", "conductivity", "alkalinity", "ANC", "DIC", "DOC"]);
-/** Amounts that may lie below zero. */
-const SIGNED = new Set(["alkalinity", "ANC"]);
+/** Looked at once the row is solved: a case or an axis may give another. */
+const CHECKED_LATER = new Set(["temperature", "pH", "pHTemperature"]);
 
 const textOf = (value: unknown): string | null => (typeof value === "string" ? value : null);
 
@@ -26,22 +29,24 @@ export function resolveWater(row: Readonly<Record<string, unknown>>, index: numb
     const raw = row[key];
     if (!field || raw === null || raw === undefined) continue;
     const read = readQuantity(raw, field, Object.hasOwn(units, key) ? units[key] : null);
-    const fault = isProblem(read) ? { code: read.code, column: key, message: `${read.message} ${read.remedy}` } : amountFault(read, key, raw);
+    if (isProblem(read)) { water.faults.push({ code: read.code, column: key, message: `${read.message} ${read.remedy}` }); continue; }
+    const base = countedBase(read, belowLimit);
+    const fault = CHECKED_LATER.has(key) ? null : amountFault(base, field, raw);
     if (fault) water.faults.push(fault);
-    else put(water, key, read as Quantity, belowLimit);
+    else put(water, key, base, read);
   }
   return water;
 }
 
-function amountFault(read: Quantity, key: string, raw: unknown): RowFault | null {
-  const isAmount = TOTALS.has(key) || key === "DIC" || key === "DOC" || key === "conductivity";
-  if (isAmount && !SIGNED.has(key) && read.base < 0) return { code: "negative-amount", column: key, message: `${key} is negative (${shorten(raw)}); amounts are 0 or more` };
-  if (key === "pCO2" && !(read.base > 0)) return { code: "out-of-range", column: key, message: `pCO2 is not above 0 (${shorten(raw)})` };
-  return null;
+function amountFault(base: number, field: Field, raw: unknown): RowFault | null {
+  const { key, range } = field;
+  if (!range || base >= range.from && base <= range.to && !(range.isOpen && base === range.from)) return null;
+  if (key === "pCO2" && base <= 0) return { code: "out-of-range", column: key, message: `pCO2 is not above 0 (${shorten(raw)})` };
+  if (base < 0 && range.from === 0) return { code: "negative-amount", column: key, message: `${key} is negative (${shorten(raw)}); amounts are 0 or more` };
+  return { code: "out-of-range", column: key, message: `${key} is out of range (${shorten(raw)}); it must be ${range.from} to ${range.to} ${range.unit}` };
 }
 
-function put(water: ResolvedWater, key: string, read: Quantity, belowLimit: BelowLimit): void {
-  const base = read.isBelow ? read.base * COUNTED[belowLimit] : read.base;
+function put(water: ResolvedWater, key: string, base: number, read: Quantity): void {
   if (TOTALS.has(key)) water.totals[key] = base;
   else if (PLAIN.has(key)) water[key as "pH"] = base;
   else if (key === "pressure") water.pressureAtm = base;

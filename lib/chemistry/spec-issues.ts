@@ -22,16 +22,27 @@ export function issueOfUnknownKey(path: Path, key: string, keysAt: readonly stri
   return { pointer, code: "unknown-key", message: `“${shorten(key)}” is not known here.`, value: shorten(key), remedy };
 }
 
-/** @param document what was parsed; `keysAt` lists the keys a place may have. */
+/** Faults answered at once; a document with more has the same one many times over. */
+export const MOST_ISSUES = 100;
+
+/** At most MOST_ISSUES of them. @param document what was parsed; `keysAt` lists the keys a place may have. */
 export function issuesOf(error: z.ZodError, document: unknown, keysAt: (path: Path) => readonly string[]): Issue[] {
-  return error.issues.flatMap((issue) => translate(issue as ZodIssue, [], document, keysAt));
+  const issues: Issue[] = [];
+  for (const issue of error.issues) {
+    if (issues.length >= MOST_ISSUES) break;
+    issues.push(...translate(issue as ZodIssue, [], document, keysAt));
+  }
+  return issues.slice(0, MOST_ISSUES);
 }
 
 function translate(issue: ZodIssue, base: Path, document: unknown, keysAt: (path: Path) => readonly string[]): Issue[] {
   const path = [...base, ...issue.path];
   const pointer = pointerTo(path);
   const value = valueAt(document, path);
-  if (issue.code === "unrecognized_keys") return issue.keys.map((key) => issueOfUnknownKey(path, key, keysAt(path)));
+  if (issue.code === "unrecognized_keys") {
+    const known = keysAt(path);
+    return issue.keys.slice(0, MOST_ISSUES).map((key) => issueOfUnknownKey(path, key, known));
+  }
   if (issue.code === "invalid_union") return translateUnion(issue, path, document, keysAt);
   const shown = value === undefined ? {} : { value: shorten(value) };
   if (issue.code === "invalid_value") return [{ pointer, code: "unknown-value", ...wordsForOptions(value, issue.values), ...shown }];

@@ -22,33 +22,53 @@ const PRESSURES: Record<string, number> = {
   atm: 1, matm: 1e-3, uatm: 1e-6, Pa: 1 / 101325, hPa: 100 / 101325, kPa: 1000 / 101325, bar: 1e5 / 101325, mbar: 100 / 101325,
 };
 
-/** One spelling for each unit: u for micro, L for litre, no stray spaces. */
+const CONDUCTIVITIES: Record<string, number> = { "uS/cm": 1, "mS/cm": 1000, "mS/m": 10, "S/m": 1e4 };
+/** Equivalents in one formula unit that alkalinity or ANC may be counted in. */
+const EQUIVALENTS: Record<string, number> = { HCO3: 1, CO3: 2, CaO: 2, C: 1 };
+
+/** One spelling for each unit: u for micro, L for litre, "/L" for "L-1" and "·L⁻¹", no stray spaces. */
 export function spellUnit(text: string): string {
-  return text.trim().replaceAll(/[µμ]/g, "u").replaceAll(/\s+/g, " ").replaceAll(/ ?\/ ?/g, "/").replace(/^(.*)\/l$/, "$1/L").replace(/ (L|kg)(?:-1|\^-1)$/, "/$1");
+  return text.trim().replaceAll(/[µμ]/g, "u").replaceAll(/[·⋅\s]+/g, " ").replaceAll(/⁻¹|−1\b/g, "-1").replaceAll(/ ?\/ ?/g, "/")
+    .replace(/ (L|l|kg|dm3)\^?-1\b/, "/$1").replace(/\/(?:l|litre|liter)\b/, "/L");
 }
 
-/** A unit with its basis: "mg/L as N", "mg N/L", "mg/L CaCO3" all say what the mass is counted in. */
+const BEHIND = /^(\S+(?:\/\w+|M)|pp[mb]) (?:as )?(?:[A-Z][A-Za-z0-9]*-)?([A-Z][A-Za-z0-9()]*)(?:\^?\d?[+-])?$/;
+const INSIDE = /^([kmunp]?g) ([A-Z][A-Za-z0-9()]*)\/(\w+)$/;
+
+/** A unit with its basis: "mg/L as N", "mg N/L", "mg/L CaCO3", "mg/L NO3-N" all say what the mass is counted in. */
 export function splitUnit(text: string): { unit: string; as: string | null } {
   const spelled = spellUnit(text);
-  const behind = /^(\S+(?:\/\w+|M)) (?:as )?([A-Z][A-Za-z0-9()]*)$/.exec(spelled);
+  const behind = BEHIND.exec(spelled);
   if (behind) return { unit: behind[1], as: behind[2] };
-  const inside = /^([kmunp]?g) ([A-Z][A-Za-z0-9()]*)\/(\w+)$/.exec(spelled);
+  const inside = INSIDE.exec(spelled);
   return inside ? { unit: `${inside[1]}/${inside[3]}`, as: inside[2] } : { unit: spelled, as: null };
 }
 
-const known = new Map<string, UnitScale | UnitProblem>();
-
 /** What a unit is worth in a field, or why the field does not take it. */
 export function unitScale(field: Field, unit: string, as: string | null): UnitScale | UnitProblem {
-  const key = `${field.kind}/${field.key}/${unit}/${as ?? ""}`;
-  let scale = known.get(key);
-  if (!scale) {
-    scale = findScale(field, unit, as) ?? { message: `${field.key} does not take the unit “${as ? `${unit} as ${as}` : unit}”.`, remedy: `Write one of ${unitsOf(field).join(", ")}.` };
-    // Hostile documents may name any number of units; the memory for them is bounded.
-    if (known.size > 2000) known.clear();
-    known.set(key, scale);
+  return findScale(field, unit, as)
+    ?? { message: `${field.key} does not take the unit “${(as ? `${unit} as ${as}` : unit).slice(0, 80)}”.`, remedy: `Write one of ${unitsOf(field).join(", ")}.` };
+}
+
+export interface ReadUnit { unit: string; as: string | null; scale: UnitScale | UnitProblem }
+
+/** Units already read, by field and text as written: a table repeats a handful of them in millions of cells. */
+const readings = new WeakMap<Field, Map<string, ReadUnit>>();
+/** Hostile documents may name any number of units, as long as they like; what is remembered of a field is bounded. */
+const MOST_READINGS = 200;
+
+/** A unit as written, with what it is worth in a field. */
+export function readUnit(field: Field, text: string): ReadUnit {
+  let known = readings.get(field);
+  if (!known) readings.set(field, known = new Map());
+  let reading = known.get(text);
+  if (!reading) {
+    const { unit, as } = splitUnit(text);
+    reading = { unit, as, scale: unitScale(field, unit, as) };
+    if (known.size >= MOST_READINGS) known.clear();
+    known.set(text, reading);
   }
-  return scale;
+  return reading;
 }
 
 /** Units that a field takes, the usual one first. */
@@ -84,7 +104,7 @@ function findScale(field: Field, unit: string, as: string | null): UnitScale | n
     case "pressure": return pressureScale(unit);
     case "temperature": return /^(°C|° C|°c|degC|C|deg C)$/.test(unit) ? plain(1) : unit === "K" ? plain(1, -273.15) : null;
     case "length": return unit === "m" ? plain(1) : unit === "km" ? plain(1000) : unit === "ft" ? plain(0.3048) : null;
-    case "conductivity": return { "uS/cm": plain(1), "mS/cm": plain(1000), "mS/m": plain(10), "S/m": plain(1e4) }[unit] ?? null;
+    case "conductivity": return Object.hasOwn(CONDUCTIVITIES, unit) ? plain(CONDUCTIVITIES[unit]) : null;
     case "sites": return sitesScale(unit);
     case "solid": {
       const amount = readAmount(unit);
@@ -105,6 +125,8 @@ function sitesScale(unit: string): UnitScale | null {
 
 /** "mmol/L" as { quantity: "mol", scale: 1e-3 } per litre or kilogram. */
 function readAmount(unit: string): { quantity: "g" | "mol" | "eq"; scale: number } | null {
+  // Parts by mass of a dilute water: mg/kg and µg/kg.
+  if (unit === "ppm" || unit === "ppb") return { quantity: "g", scale: unit === "ppm" ? 1e-3 : 1e-6 };
   const molar = /^([munp]?)M$/.exec(unit);
   if (molar) return { quantity: "mol", scale: PREFIX[molar[1]] };
   const match = /^([kmunp]?)(g|mol|eq)\/(L|kg|dm3|m3)$/.exec(unit);
@@ -132,8 +154,7 @@ function analyteScale(analyte: Analyte, unit: string, as: string | null): UnitSc
 /** eq per unit of mass counted in CaCO3, HCO3 or CO3. */
 function equivalentsOfMass(as: string, scale: number): UnitScale | null {
   if (as === "CaCO3") return plain(scale / MG_CACO3_PER_MEQ);
-  const charge = { HCO3: 1, CO3: 2, CaO: 2, C: 1 }[as];
-  return charge === undefined ? null : plain(scale * charge / molarMassOf(as)!);
+  return Object.hasOwn(EQUIVALENTS, as) ? plain(scale * EQUIVALENTS[as] / molarMassOf(as)!) : null;
 }
 
 function organicScale(quantity: "g" | "mol" | "eq", scale: number, as: string | null): UnitScale | null {

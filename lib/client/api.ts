@@ -2,6 +2,7 @@
 import type { ConstantsTable, Job, JobDryRun, Me, ResultPage, SampleSet, SolveResponse } from "@/lib/schemas/api";
 import type { JobSpec } from "@/lib/schemas/job-spec";
 import { errorOf } from "./errors";
+import { signInAddress } from "./sign-in-address";
 
 export const ROOT = "/api/v1";
 
@@ -26,7 +27,7 @@ export async function call<T>(method: "GET" | "POST" | "PATCH" | "DELETE", addre
     headers: { Accept: "application/json", ...(method === "GET" ? {} : { "Content-Type": "application/json" }), ...options.headers },
     body: options.body === undefined ? (method === "POST" ? "{}" : undefined) : JSON.stringify(options.body),
   });
-  if (response.status === 401 && typeof location !== "undefined") location.assign("/sign-in");
+  if (response.status === 401 && typeof location !== "undefined") location.assign(signInAddress());
   if (!response.ok) throw await errorOf(response);
   return (response.status === 204 ? null : await response.json()) as T;
 }

@@ -11,9 +11,11 @@ export interface Upload { name: string; description: string; visibility: "privat
 
 /** Sends a CSV or JSON file, as a new set or as the next version of one. @throws ApiError with every fault at its place. */
 export async function uploadSamples(upload: Upload, setId: string | null): Promise<SampleSet> {
+  // Browsers hold a chosen file as it was; one that was written to since cannot be read any more, which fetch would call a failed network.
+  const file = await upload.file.arrayBuffer().then((bytes) => new File([bytes], upload.file.name), () => { throw new Error("The file was changed or moved after it was chosen; choose it again."); });
   const form = new FormData();
   for (const key of ["name", "description", "visibility", "note"] as const) form.set(key, upload[key]);
-  form.set("file", upload.file);
+  form.set("file", file);
   const response = await fetch(setId ? `${ROOT}/sample-sets/${setId}/versions` : `${ROOT}/sample-sets`, { method: "POST", body: form, headers: { Accept: "application/json" } });
   if (!response.ok) throw await errorOf(response);
   return (await response.json()) as SampleSet;

@@ -13,12 +13,12 @@ export const pageActor = cache(async (): Promise<Actor | null> => {
 });
 
 /**
- * For server pages: the signed-in person, else a redirect to /sign-in. With a role, anybody else is sent to the front
- * page (the page's existence is no secret, its data are).
+ * For server pages: the signed-in person, else a redirect to the sign-in page, which leads back to `here`. With a role,
+ * anybody else is sent to the front page (the page's existence is no secret, its data are).
  */
-export async function requireActor(role?: Role): Promise<Actor> {
+export async function requireActor(here: string, role?: Role): Promise<Actor> {
   const actor = await pageActor();
-  if (!actor) redirect("/sign-in");
+  if (!actor) redirect(here === "/" ? "/sign-in" : `/sign-in?${new URLSearchParams({ callbackUrl: here })}`);
   if (role && actor.role !== role) redirect("/");
   return actor;
 }

@@ -39,7 +39,13 @@ export async function byPalette(page: Page, text: string, wanted: RegExp): Promi
   await page.keyboard.insertText(text);
   await palette.locator("[cmdk-item]").filter({ hasText: wanted }).first().waitFor();
   const chosen = palette.locator('[cmdk-item][data-selected="true"]').filter({ hasText: wanted });
-  for (let stop = 0; stop < MOST_STOPS && (await chosen.count()) === 0; stop++) await page.keyboard.press("ArrowDown");
+  const selected = palette.locator('[cmdk-item][data-selected="true"]');
+  for (let stop = 0; stop < MOST_STOPS && (await chosen.count()) === 0; stop++) {
+    const before = await selected.first().innerText();
+    await page.keyboard.press("ArrowDown");
+    // The mark moves a frame after the key.
+    await page.waitForFunction((text) => document.querySelector<HTMLElement>('[cmdk-item][data-selected="true"]')?.innerText !== text, before, { timeout: 2000 });
+  }
   await page.keyboard.press("Enter");
 }
 

@@ -34,15 +34,14 @@ export const productEnv = (dataDir, address) => ({
 export const serverUrl = (dataDir) => Object.assign(new URL(clusterUrl(dataDir)), { pathname: "/postgres" }).href;
 
 /**
- * @param {{ dataDir: string, port?: number, isGroup?: boolean, env?: Record<string, string | undefined>, onLine?: (line: string) => void, timeoutMs?: number }} options
+ * @param {{ dataDir: string, port?: number, env?: Record<string, string | undefined>, onLine?: (line: string) => void, timeoutMs?: number }} options
  * @returns {Promise<{ pid: number, address: string, port: number, tookMs: number, output: () => string, stop: (signal?: NodeJS.Signals) => Promise<number | string | null> }>}
  */
-export async function startProduct({ dataDir, port, isGroup = false, env = {}, onLine = () => {}, timeoutMs = 420_000 }) {
+export async function startProduct({ dataDir, port, env = {}, onLine = () => {}, timeoutMs = 420_000 }) {
   const chosen = port ?? (await freePort(FIRST_PORT + Math.floor(Math.random() * 500)));
   const started = Date.now();
   const child = spawn(process.execPath, [path.join(ROOT, "jobs/start.mjs")], {
-    // As a group of its own it can be sent what a terminal's Ctrl-C sends: a signal to all of it at once.
-    cwd: ROOT, stdio: ["ignore", "pipe", "pipe"], detached: isGroup,
+    cwd: ROOT, stdio: ["ignore", "pipe", "pipe"],
     // Undefined values are left out by spawn: what the surrounding test run has set must not steer the product.
     env: { ...process.env, DATABASE_URL: undefined, NEXTAUTH_SECRET: undefined, NEXTAUTH_URL: undefined, TUFA_PUBLIC_URL: undefined, NODE_ENV: undefined, HOST: undefined, TUFA_LOG: "warn", TUFA_DATA_DIR: dataDir, PORT: String(chosen), ...env },
   });

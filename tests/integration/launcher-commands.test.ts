@@ -2,7 +2,7 @@
 import { execFile } from "node:child_process";
 import { promisify } from "node:util";
 import pg from "pg";
-import { afterAll, beforeAll, describe, expect, it } from "vitest";
+import { afterAll, afterEach, beforeAll, describe, expect, it } from "vitest";
 import { openCluster } from "@/jobs/launcher/cluster.mjs";
 import { runningServer } from "@/jobs/launcher/cluster-server.mjs";
 import { randomBase62 } from "@/lib/ids";
@@ -14,6 +14,7 @@ const dataDir = makeDataDir();
 const outsideDir = makeDataDir();
 let outsideUrl: string;
 let server: pg.Client;
+let product: Awaited<ReturnType<typeof startProduct>> | null = null;
 
 /** `npm run …` as a user types it: with npm's own words, had it any. */
 const npm = (args: string[], env: Record<string, string>) =>
@@ -27,6 +28,8 @@ beforeAll(async () => {
   await server.query(`create database ${name}`);
   outsideUrl = Object.assign(new URL(process.env.TUFA_TEST_SERVER!), { pathname: `/${name}` }).href;
 });
+// Also where a test broke off before it had stopped what it had started.
+afterEach(async () => { await product?.stop(); product = null; });
 afterAll(async () => {
   await server.query(`drop database ${new URL(outsideUrl).pathname.slice(1)} with (force)`);
   await server.end();
@@ -53,7 +56,7 @@ describe.sequential("npm run token", () => {
   });
 
   it("prints a token and nothing else, beside a running product and without one, and leaves the database as it found it", async () => {
-    const product = await startProduct({ dataDir });
+    product = await startProduct({ dataDir });
     const beside = await ask("--email", email, "--scopes", "all", "--expires", "30d");
     expect(beside.stdout).toMatch(/^tufa_[0-9A-Za-z]{36}\n$/);
     const headers = { authorization: `Bearer ${beside.stdout.trim()}` };
@@ -95,7 +98,7 @@ describe.sequential("on a PostgreSQL of one's own", () => {
   }, 30_000);
 
   it("npm start starts no database, seeds nothing and names nobody", async () => {
-    const product = await startProduct({ dataDir: outsideDir, env: { DATABASE_URL: outsideUrl } });
+    product = await startProduct({ dataDir: outsideDir, env: { DATABASE_URL: outsideUrl } });
     expect((await fetch(`${product.address}/api/v1/health`)).ok).toBe(true);
     expect(product.output()).not.toContain("sallowmere");
     expect(product.output()).toContain("npm run admin");

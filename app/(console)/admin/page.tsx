@@ -8,7 +8,7 @@ import { requireActor } from "@/lib/http/page-auth";
 export const metadata: Metadata = { title: "People" };
 
 export default async function AdminPage() {
-  const actor = await requireActor("administrator");
+  const actor = await requireActor("/admin", "administrator");
   return (
     <Page title="People and system" isWide>
       <SystemHealth />

@@ -6,6 +6,6 @@ import { ROLE_SCOPES } from "@/lib/services/access";
 export const metadata: Metadata = { title: "API tokens" };
 
 export default async function TokensPage() {
-  const actor = await requireActor();
+  const actor = await requireActor("/tokens");
   return <TokenPage scopes={ROLE_SCOPES[actor.role]} isAdministrator={actor.role === "administrator"} />;
 }

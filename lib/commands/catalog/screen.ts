@@ -22,7 +22,7 @@ export const PAGES: readonly Page[] = [
 export const go = defineCommand<Page>({
   name: "go",
   title: "Go to a page",
-  keywords: ["page", "open", "navigate", "visit", "tokens", "account", "samples"],
+  keywords: ["page", "open", "navigate", "visit"],
   help: "Leaves the console for a page; the stream is kept as it is.",
   signature: "page",
   example: "go samples",

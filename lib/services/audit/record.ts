@@ -1,10 +1,10 @@
 import type { Db, Tx } from "@/db/client";
 import { auditEvent } from "@/db/schema";
 import type { Actor } from "@/lib/schemas/actor";
+import type { AuditAction } from "@/lib/schemas/audit-actions";
 
 export interface AuditEntry {
-  /** noun-verb, e.g. "token-created". */
-  action: string;
+  action: AuditAction;
   /** Id of what it happened to. */
   target: string | null;
   /** Facts for the reader; never secrets. */

@@ -3,6 +3,8 @@
  * `Alkalinity (mg CaCO3/L)`, `EC (µS/cm)`, `Sample`, `Date`.
  */
 import { ANALYTES } from "@/lib/chemistry/data";
+import type { Analyte } from "@/lib/chemistry/data/types";
+import { spellUnit } from "@/lib/chemistry/units";
 
 export interface CsvColumn {
   /** Key of the row: an analyte, or id, site, date, temperature … */
@@ -30,11 +32,8 @@ const TRAILING = new RegExp(String.raw`^(.+?)[\s,_;:]+(${UNIT_WORD})((?:\s+as\s+
 const BASIS = /\s*(?:\bas\s+([A-Z][A-Za-z0-9]*)|-\s*(N|P|S|Si|C))\s*$/u;
 const BASIS_IN_UNIT = /^([mkuµμ]?g)\s*(CaCO3|HCO3|CO3|NO3|NH4|NO2|SO4|PO4|SiO2|N|S|P|Si|C)\s*\/\s*(L|l|kg)$/u;
 
-/** Spelling of a unit as the job spec knows it: L for litre, u for micro, no spaces, no exponent. */
-export function spellUnit(text: string): string {
-  return text.trim().replaceAll(/[µμ]/g, "u").replaceAll(/\s+/g, " ")
-    .replace(/ (L|l|kg)(?:-1|\^-1)$/, "/$1").replaceAll(/\s*\/\s*/g, "/").replace(/\/(l|dm3)\b/, "/L").replace(/val\//, "eq/");
-}
+/** Spelling of a unit as the job spec knows it; "val" is the older word for an equivalent. */
+const spell = (text: string): string => spellUnit(text).replace("/dm3", "/L").replace(/val\//, "eq/");
 
 const fold = (text: string): string => text.toLowerCase().replaceAll(/[_.]+/g, " ").replaceAll(/\s+/g, " ").trim();
 
@@ -65,13 +64,22 @@ function split(heading: string): { name: string; unit: string | null; basis: str
     unit = `${inside[1]}/${inside[3]}`;
     basis = inside[2];
   }
-  return { name, unit: unit === null ? null : spellUnit(unit), basis };
+  return { name, unit: unit === null ? null : spell(unit), basis };
 }
 
-const analyteOf = (name: string) => {
+interface Named { analyte: Analyte; /** Formula that the name itself counts masses in: SiO2 for silica. */ basis: string | null }
+
+function analyteOf(name: string): Named | null {
   const bare = name.replaceAll(/[\^]?\d?[+-]+$/g, "").trim();
-  return Object.values(ANALYTES).find((analyte) => [name, bare].some((each) => analyte.key.toLowerCase() === fold(each) || analyte.synonyms.includes(fold(each))));
-};
+  for (const each of [fold(name), fold(bare)]) {
+    const analyte = ANALYTES.find(({ key, synonyms }) => key.toLowerCase() === each || synonyms.includes(each));
+    if (analyte) return { analyte, basis: analyte.namedBasis?.[each] ?? null };
+  }
+  return null;
+}
+
+/** Whether a unit is one of mass, which needs a formula to be counted in. */
+const isMass = (unit: string): boolean => /^[kmunp]?g\/|^pp[mb]$/.test(unit);
 
 /** What a heading says, or null where it names nothing Tufa knows. */
 export function readHeading(heading: string): CsvColumn | null {
@@ -81,8 +89,11 @@ export function readHeading(heading: string): CsvColumn | null {
   if (plain && (unit === null || plain.units.length === 0 || plain.units.includes(unit.toLowerCase()))) {
     return { key: plain.key, kind: plain.kind, unit: null };
   }
-  const analyte = analyteOf(name);
-  if (!analyte) return null;
-  const chosen = unit ?? (basis ? analyte.defaultUnit : null);
-  return { key: analyte.key, kind: "quantity", unit: chosen === null ? null : basis ? `${chosen} as ${basis}` : chosen };
+  const named = analyteOf(name);
+  if (!named) return null;
+  const { analyte } = named;
+  const chosen = unit ?? (basis ? analyte.defaultUnit : named.basis ? "mg/L" : null);
+  if (chosen === null) return { key: analyte.key, kind: "quantity", unit: null };
+  const counted = basis ?? (isMass(chosen) ? named.basis : null);
+  return { key: analyte.key, kind: "quantity", unit: counted ? `${chosen} as ${counted}` : chosen };
 }

@@ -2,7 +2,7 @@
  * An upload of waters, JSON or CSV, from bytes to what is stored. Runs in the request for small uploads and in a thread
  * for large ones: the waters leave it as ready JSON texts, one per stored chunk.
  */
-import { checkSpec } from "@/lib/chemistry/check-spec";
+import { checkTable } from "@/lib/chemistry/check-spec";
 import { checkWaters } from "@/lib/chemistry/resolve-job";
 import type { Issue } from "@/lib/errors";
 import { sampleSetCreate, sampleSetVersionCreate } from "@/lib/schemas/api";
@@ -80,10 +80,7 @@ function nameWaters(rows: Record<string, unknown>[]): void {
 
 /** Faults that would refuse a job over these waters: found by the job spec's own check, with pointers of this document. */
 function documentIssues(draft: Draft): Issue[] {
-  const { issues } = checkSpec({
-    spec: 1, waters: { rows: draft.rows, units: draft.units }, cases: [{ name: "check", close: ["pH", "alkalinity"], activity: "davies" }],
-  });
-  return issues.filter((issue) => issue.pointer.startsWith("/waters")).map((issue) => {
+  return checkTable(draft.rows, { ...draft.units }).map((issue) => {
     const pointer = issue.pointer.slice("/waters".length);
     const index = /^\/rows\/(\d+)/.exec(pointer);
     const line = index && draft.lines ? draft.lines[Number(index[1])] : null;

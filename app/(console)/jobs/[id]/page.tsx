@@ -14,10 +14,11 @@ const searchText = (search: Search): string =>
   new URLSearchParams(Object.entries(search).flatMap(([key, value]) => (value === undefined ? [] : [value].flat().map((each) => [key, each] as [string, string])))).toString();
 
 export default async function JobPage({ params, searchParams }: { params: Promise<{ id: string }>; searchParams: Promise<Search> }) {
-  const actor = await requireActor();
-  const job = await getJob(actor, (await params).id).catch((error: unknown) => {
+  const [{ id }, search] = [await params, searchText(await searchParams)];
+  const actor = await requireActor(`/jobs/${id}${search ? `?${search}` : ""}`);
+  const job = await getJob(actor, id).catch((error: unknown) => {
     if (error instanceof AppError && error.code === "not-found") notFound();
     throw error;
   });
-  return <JobView initial={job} me={{ id: actor.userId }} search={searchText(await searchParams)} />;
+  return <JobView initial={job} me={{ id: actor.userId }} search={search} />;
 }

@@ -1,0 +1,6 @@
+import { Nowhere } from "@/components/shell/nowhere";
+
+/** A job or a sample set that is not there, inside the frame of the signed-in pages. */
+export default function NotFound() {
+  return <Nowhere />;
+}
