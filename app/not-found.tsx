@@ -5,5 +5,10 @@ import { Wordmark } from "@/components/ui/wordmark";
 export const metadata: Metadata = { title: "Not found" };
 
 export default function NotFound() {
-  return <main className="px-5 pt-10"><Wordmark className="mx-auto flex max-w-md px-5 text-2xl" /><Nowhere /></main>;
+  return (
+    <main className="pt-10">
+      <div className="mx-auto max-w-md px-5"><Wordmark className="text-2xl" /></div>
+      <Nowhere />
+    </main>
+  );
 }

@@ -3,7 +3,7 @@ import { useEffect, useState, type ReactNode } from "react";
 import { Button } from "@/components/ui/button";
 import { Page, Section } from "@/components/ui/page";
 import { leaveSession } from "@/lib/client/session";
-import { chooseTheme, THEME_KEY, type Theme } from "@/lib/client/theme";
+import { chooseTheme, keptTheme, type Theme } from "@/lib/client/theme";
 import { grouped } from "@/lib/commands/numbers";
 
 const THEMES: readonly [Theme, string][] = [["dark", "dark"], ["light", "light"], ["system", "as the system has it"]];
@@ -12,7 +12,7 @@ export interface AccountFacts { name: string; email: string; role: string; scope
 
 export function AccountView({ facts }: { facts: AccountFacts }) {
   const [theme, setTheme] = useState<Theme | null>(null);
-  useEffect(() => { const kept = localStorage.getItem(THEME_KEY); setTheme(kept === "dark" || kept === "light" ? kept : "system"); }, []);
+  useEffect(() => setTheme(keptTheme()), []);
   return (
     <Page title="Your account" actions={<Button onClick={() => void leaveSession()}>Sign out</Button>}>
       <Section title="Who you are">

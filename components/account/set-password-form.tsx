@@ -1,6 +1,6 @@
 "use client";
 import Link from "next/link";
-import { useEffect, useState, type FormEvent, type ReactNode } from "react";
+import { useEffect, useRef, useState, type FormEvent, type ReactNode } from "react";
 import { Button } from "@/components/ui/button";
 import { Field } from "@/components/ui/field";
 import { setPassword } from "@/lib/client/accounts";
@@ -13,6 +13,8 @@ export function SetPasswordForm() {
   const [again, setAgain] = useState("");
   const [error, setError] = useState("");
   const [doneFor, setDoneFor] = useState<string | null>(null);
+  const onward = useRef<HTMLAnchorElement>(null);
+  useEffect(() => { if (doneFor) onward.current?.focus(); }, [doneFor]);
   useEffect(() => {
     const found = location.hash.slice(1);
     setSecret(found);
@@ -27,7 +29,7 @@ export function SetPasswordForm() {
       setError(issue ? `${issue.message} ${issue.remedy ?? ""}` : reason instanceof Error ? reason.message : "The password was not set.");
     });
   };
-  if (doneFor) return <Said><p role="status" className="text-sm">The password of {doneFor} is set. <Link href="/sign-in" autoFocus className="text-accent underline underline-offset-4">Sign in</Link></p></Said>;
+  if (doneFor) return <Said><p role="status" className="text-sm">The password of {doneFor} is set. <Link href="/sign-in" ref={onward} className="text-accent underline underline-offset-4">Sign in</Link></p></Said>;
   if (secret === "") return <Said><p role="alert" className="text-sm text-bad">This address lacks its secret part. Open the whole link as it was given, or ask an administrator for a new one.</p></Said>;
   return (
     <form onSubmit={onSubmit} className="flex flex-col gap-4">

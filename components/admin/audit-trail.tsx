@@ -19,7 +19,7 @@ const COLUMNS: readonly TableColumn<AuditEvent>[] = [
   { title: "who", className: "whitespace-nowrap", cell: (event) => event.actor?.name ?? <span className="text-dim">nobody signed in</span> },
   { title: "via", cell: (event) => event.via }, { title: "what", className: "whitespace-nowrap", cell: (event) => event.action },
   { title: "target", className: "text-xs text-dim", cell: (event) => event.target },
-  { title: "details", className: "text-xs text-dim max-w-96 break-words", cell: (event) => detailText(event.detail) },
+  { title: "details", className: "text-xs text-dim min-w-56 max-w-96 break-words", cell: (event) => detailText(event.detail) },
 ];
 
 /** Who did what, newest first. */

@@ -20,11 +20,11 @@ interface Acts { meId: string; onRole: (user: User, role: Role) => void; onLink:
 
 const columns = ({ meId, onRole, onLink, onDisable }: Acts): readonly TableColumn<User>[] => [
   { title: "name", className: "whitespace-nowrap", cell: (user) => user.name }, { title: "e-mail", cell: (user) => user.email },
-  { title: "role", cell: (user) => <select aria-label={`Role of ${user.name}`} value={user.role} disabled={user.id === meId} onChange={(event) => onRole(user, event.target.value as Role)} className="min-h-7 rounded border border-faint bg-raised px-1">{ROLES.map((role) => <option key={role}>{role}</option>)}</select> },
+  { title: "role", cell: (user) => <select aria-label={`Role of ${user.name}`} value={user.role} disabled={user.id === meId} onChange={(event) => onRole(user, event.target.value as Role)} className="min-h-7 rounded border border-faint/75 bg-raised px-1">{ROLES.map((role) => <option key={role}>{role}</option>)}</select> },
   { title: "state", cell: (user) => <span className={STATE_COLOURS[user.state]}>{user.state}</span> },
   { title: "last in", cell: (user) => <TimeText at={user.lastSignInAt} fallback="never" /> },
   { title: "", cell: (user) => (
-    <span className="flex flex-wrap gap-1">
+    <span className="flex gap-1">
       <Button className="!min-h-7 !px-2 text-xs" onClick={() => onLink(user)} aria-label={`New password link for ${user.name}`}>Password link</Button>
       {user.id !== meId && <Button kind={user.state === "disabled" ? "plain" : "danger"} className="!min-h-7 !px-2 text-xs" onClick={() => onDisable(user)} aria-label={`${user.state === "disabled" ? "Enable" : "Disable"} ${user.name}`}>{user.state === "disabled" ? "Enable" : "Disable"}</Button>}
     </span>

@@ -36,7 +36,7 @@ export function useWidth(mostWidth: number): [(element: HTMLElement | null) => v
 }
 
 /** Line styles and markers tell cases apart without colour. */
-const DASHES = ["", "7 4", "2 4", "9 3 2 3", "12 4", "4 2 1 2"];
+const DASHES = ["", "7 4", "2 4", "9 3 2 3", "12 4", "4 2 1 2", "1 2", "12 3 2 3 2 3"];
 const COLOURS = ["var(--accent)", "var(--water)", "var(--warn)", "var(--good)", "var(--bad)"];
 export const colourOf = (index: number): string => COLOURS[index % COLOURS.length];
 export const dashOf = (index: number): string => DASHES[index % DASHES.length];
@@ -131,7 +131,6 @@ function paperColours(): (name: string) => string {
 export function standaloneSvg(svg: SVGSVGElement): string {
   const copy = svg.cloneNode(true) as SVGSVGElement;
   const colour = paperColours();
-  copy.setAttribute("xmlns", "http://www.w3.org/2000/svg");
   copy.setAttribute("font-family", "JetBrains Mono, monospace");
   copy.setAttribute("font-size", "12");
   copy.removeAttribute("class");

@@ -104,7 +104,7 @@ function sayRead(read: Read, left: number): string {
   const used = read.rows.length < read.rowCount
     ? `${grouped(read.rows.length)} of ${grouped(read.rowCount)} rows that are ok, in ${read.runs} runs spread evenly over them.` : `${grouped(read.rowCount)} rows that are ok.`;
   const whose = read.water ? ` Water ${read.water}.` : read.kind === "xy" && read.of === "middle" ? " Line: median; band: the range of eight waters in ten." : "";
-  return `${used}${whose}${left > 0 ? ` The first ${MOST_CURVES} of ${MOST_CURVES + left} curves; a condition narrows them.` : ""}`;
+  return `${used}${whose}${left > 0 ? ` ${MOST_CURVES} of ${MOST_CURVES + left} curves, from all over; a condition narrows them.` : ""}`;
 }
 
 /** A logarithm has no place for zero and below: what it hides is said. */

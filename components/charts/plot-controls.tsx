@@ -62,7 +62,7 @@ function Select({ label, value, onChange, children }: { label: string; value: st
 }
 
 function Check({ label, isOn, onChange }: { label: string; isOn: boolean; onChange: (isOn: boolean) => void }) {
-  return <label className="flex min-h-6 items-center gap-1.5"><input type="checkbox" checked={isOn} onChange={(event) => onChange(event.target.checked)} />{label}</label>;
+  return <label className="flex min-h-7 items-center gap-1.5"><input type="checkbox" checked={isOn} onChange={(event) => onChange(event.target.checked)} />{label}</label>;
 }
 
 /** A list where it holds every water; of a larger job the id is typed, taken with Enter or on leaving. */

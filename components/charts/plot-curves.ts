@@ -2,6 +2,7 @@
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 import type { DrawnCurve } from "./curve-chart";
 import type { PlotRow } from "./plot-data";
+import { tickLabel } from "./scale";
 
 /** More curves than this are a thicket. */
 export const MOST_CURVES = 8;
@@ -20,6 +21,8 @@ export function byLabel<T>(rows: readonly PlotRow[], labelOf: (row: PlotRow) => 
 }
 
 export const caseOf = (row: PlotRow): string => String(row.case ?? "");
+
+const valueText = (value: PlotRow[string]): string => (typeof value === "number" ? tickLabel(Number(value.toPrecision(4))) : String(value ?? ""));
 
 const pairOf = (x: string, y: string) => (row: PlotRow): { x: number; y: number } | null => {
   const [a, b] = [row[x], row[y]];
@@ -59,10 +62,12 @@ function middleOf(points: readonly { x: number; y: number }[]): Pick<DrawnCurve,
  * median with the range of eight in ten; rows of one water are joined as they are.
  */
 export function curvesOver(rows: readonly PlotRow[], x: string, y: string, otherAxes: readonly ColumnDescriptor[], isMiddle: boolean): { curves: DrawnCurve[]; left: number } {
-  const labelOf = (row: PlotRow): string => [caseOf(row), ...otherAxes.map((axis) => `${axis.name} ${row[axis.name]}${axis.unit ? ` ${axis.unit}` : ""}`)].filter(Boolean).join(", ");
+  const labelOf = (row: PlotRow): string => [caseOf(row), ...otherAxes.map((axis) => `${axis.name} ${valueText(row[axis.name])}${axis.unit ? ` ${axis.unit}` : ""}`)].filter(Boolean).join(", ");
   const { labels, lists } = byLabel(rows, labelOf, pairOf(x, y));
-  const curves = labels.slice(0, MOST_CURVES).map((label, k): DrawnCurve => (isMiddle
-    ? { label, ...middleOf(lists[k]) } : { label, points: [...lists[k]].sort((a, b) => a.x - b.x) }));
+  // Of too many, some from everywhere: the first ones would all be of one case.
+  const chosen = labels.length <= MOST_CURVES ? labels.map((_, k) => k) : Array.from({ length: MOST_CURVES }, (_, k) => Math.round((k * (labels.length - 1)) / (MOST_CURVES - 1)));
+  const curves = chosen.map((k): DrawnCurve => (isMiddle
+    ? { label: labels[k], ...middleOf(lists[k]) } : { label: labels[k], points: [...lists[k]].sort((a, b) => a.x - b.x) }));
   return { curves, left: labels.length - curves.length };
 }
 

@@ -7,6 +7,7 @@ import { Field } from "@/components/ui/field";
 import { FormulaText } from "@/components/ui/formula-text";
 import { LoadMore, LoadState } from "@/components/ui/load-state";
 import { Page } from "@/components/ui/page";
+import { ProgressBar } from "@/components/ui/progress-bar";
 import { SelectField } from "@/components/ui/select-field";
 import { TimeText } from "@/components/ui/time-text";
 import { listJobs } from "@/lib/client/api";
@@ -18,14 +19,25 @@ const COLOURS: Record<Job["status"], string> = { queued: "text-dim", running: "t
 const STATUSES = ["queued", "running", "done", "failed", "cancelled"] as const;
 
 const COLUMNS: readonly TableColumn<Job>[] = [
-  { title: "job", cell: (job) => <Link href={`/jobs/${job.id}`} className="inline-flex min-h-6 items-center text-accent underline-offset-4 hover:underline"><span><FormulaText>{job.title}</FormulaText></span></Link> },
-  { title: "status", cell: (job) => <span className={COLOURS[job.status]}>{job.status}{job.status === "running" && job.counts.rows > 0 ? ` ${Math.floor((100 * job.counts.done) / job.counts.rows)} %` : ""}</span> },
+  { title: "job", className: "min-w-44", cell: (job) => <Link href={`/jobs/${job.id}`} className="inline-flex min-h-6 items-center text-accent underline-offset-4 hover:underline"><span><FormulaText>{job.title}</FormulaText></span></Link> },
+  { title: "status", cell: (job) => <Standing job={job} /> },
   { title: "rows", isRight: true, cell: (job) => grouped(job.counts.rows) },
   { title: "ok", isRight: true, cell: (job) => grouped(job.counts.ok) },
   { title: "not ok", isRight: true, cell: (job) => <span className={job.counts.invalid + job.counts.notConverged > 0 ? "text-bad" : ""}>{grouped(job.counts.invalid + job.counts.notConverged)}</span> },
   { title: "by", className: "whitespace-nowrap", cell: (job) => job.owner.name },
   { title: "submitted", cell: (job) => <TimeText at={job.createdAt} /> },
 ];
+
+function Standing({ job }: { job: Job }) {
+  const { done, rows } = job.counts;
+  const isUnderWay = job.status === "running" && rows > 0;
+  return (
+    <div className="whitespace-nowrap">
+      <span className={COLOURS[job.status]}>{job.status}{isUnderWay ? ` ${Math.floor((100 * done) / rows)} %` : ""}</span>
+      {isUnderWay && <ProgressBar label={`Rows solved of ${job.title}`} done={done} of={rows} />}
+    </div>
+  );
+}
 
 /** Jobs whose events came since the list was read, as they stand now. */
 function useMoved(onNew: () => void): Map<string, JobEvent> {

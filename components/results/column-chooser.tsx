@@ -58,7 +58,7 @@ export function ColumnChooser({ columns, shown, onChange }: { columns: readonly 
                 </label>
                 <div className="ml-5">
                   {own.map((column) => (
-                    <label key={column.name} className="flex min-h-6 items-center gap-2" title={column.description}>
+                    <label key={column.name} className="flex min-h-7 items-center gap-2" title={column.description}>
                       <input type="checkbox" checked={names.has(column.name)} onChange={(event) => set([column], event.target.checked)} /><FormulaText>{column.name}</FormulaText>
                       <span className="text-xs text-dim">{column.unit}</span>
                     </label>

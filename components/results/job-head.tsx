@@ -46,6 +46,8 @@ export function JobHead({ job, event, me, onShow, onChanged, announce }: HeadPro
   );
 }
 
+const timeLeft = (seconds: number): string => (seconds < 100 ? `${Math.max(1, Math.ceil(seconds))} s` : `${Math.ceil(seconds / 60)} min`);
+
 function Progress({ job, event }: { job: Job; event: JobEvent | null }) {
   if (hasEnded(job)) return null;
   const { counts } = job;
@@ -60,7 +62,7 @@ function Progress({ job, event }: { job: Job; event: JobEvent | null }) {
       <p className="mt-1 flex flex-wrap gap-x-5 text-xs text-dim">
         <span>{grouped(counts.done)} of {grouped(counts.rows)} rows</span>
         {pace != null && <span>{grouped(Math.round(pace))} rows/s</span>}
-        {left != null && <span>about {Math.max(1, Math.ceil(left))} s left</span>}
+        {left != null && <span>about {timeLeft(left)} left</span>}
         {job.status === "queued" && job.queue && job.queue.rowsAhead > 0 && <span>{grouped(job.queue.rowsAhead)} rows ahead of it</span>}
       </p>
     </div>
@@ -74,9 +76,9 @@ function Counts({ job, onShow }: Pick<HeadProps, "job" | "onShow">) {
     <p className="mt-2 flex flex-wrap gap-x-4 gap-y-1 text-sm tabular-nums">
       <span>{grouped(counts.rows)} rows</span>
       {shown.map(([name, count, colour]) => (
-        <button key={name} type="button" onClick={() => onShow((where) => whereStatus(where, name))} className={`min-h-6 ${colour} underline-offset-4 hover:underline`} title={`Show the rows that are ${name}`}>{grouped(count)} {name}</button>
+        <button key={name} type="button" onClick={() => onShow((where) => whereStatus(where, name))} className={`min-h-7 ${colour} underline-offset-4 hover:underline`} title={`Show the rows that are ${name}`}>{grouped(count)} {name}</button>
       ))}
-      {counts.warned > 0 && <button type="button" onClick={() => onShow(whereWarned)} className="min-h-6 text-warn underline-offset-4 hover:underline" title="Show the rows with warnings">{grouped(counts.warned)} with warnings</button>}
+      {counts.warned > 0 && <button type="button" onClick={() => onShow(whereWarned)} className="min-h-7 text-warn underline-offset-4 hover:underline" title="Show the rows with warnings">{grouped(counts.warned)} with warnings</button>}
     </p>
   );
 }

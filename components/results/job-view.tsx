@@ -63,13 +63,13 @@ export function JobView({ initial, me, search }: { initial: Job; me: { id: strin
   return (
     <div className="flex min-h-full flex-col lg:h-full">
       <JobHead job={job} event={followed.event} me={me} onChanged={setChanged} announce={setNotice} onShow={(narrow) => setView({ where: narrow(view.where) })} />
-      <p role="status" aria-live="polite" className={notice ? "px-4 pt-1 text-xs" : "sr-only"}>{notice}</p>
+      <p role="status" aria-live="polite" className={notice ? "px-4 py-1 text-xs" : "sr-only"}>{notice}</p>
       <p role="status" aria-live="polite" className="sr-only">{said}</p>
       {!isPlanned ? <p className="p-4 text-sm text-dim">{hasEnded(job) ? "The job has no rows." : "The rows will stand here as they are solved."}</p> : (
         <div className="flex min-h-0 flex-1 flex-col xl:flex-row">
           <section aria-label="Rows" className="flex min-h-0 min-w-0 flex-1 flex-col max-xl:h-[34rem] max-xl:flex-none">
             <div className="flex flex-wrap items-center gap-x-4 gap-y-1 border-b border-line px-4 py-2">
-              <FilterBar columns={all} where={view.where} rowCount={rows.isStale ? null : rows.rowCount} total={hasEnded(job) ? job.counts.rows : job.counts.done} isPartial={!hasEnded(job)} serverError={rows.error} onChange={(where) => setView({ where })} />
+              <FilterBar columns={all} where={view.where} rowCount={rows.isStale ? null : rows.rowCount} total={job.counts.done} isPartial={!hasEnded(job)} serverError={rows.error} onChange={(where) => setView({ where })} />
               <ColumnChooser columns={all} shown={shown} onChange={(columns) => setView({ columns })} />
               <Downloads jobId={job.id} view={view} columnCount={all.length} isPartial={!hasEnded(job)} />
             </div>

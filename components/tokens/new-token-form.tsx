@@ -31,6 +31,8 @@ export function NewTokenForm({ scopes, onMade }: { scopes: readonly Scope[]; onM
   const [chosen, setChosen] = useState<readonly Scope[]>(scopes.filter((scope) => scope !== "admin"));
   const [life, setLife] = useState("90");
   const [day, setDay] = useState("");
+  // A day less than a year: the last day counts to its end.
+  const [days] = useState(() => { const now = Date.now(); return { first: dayText(now), last: dayText(now + 364 * DAY_MS) }; });
   const [isBusy, setBusy] = useState(false);
   const [failure, setFailure] = useState("");
   const onSubmit = (event: FormEvent): void => {
@@ -45,7 +47,7 @@ export function NewTokenForm({ scopes, onMade }: { scopes: readonly Scope[]; onM
       <div className="flex flex-wrap items-start gap-4">
         <Field label="Name" required maxLength={80} value={name} onChange={(event) => setName(event.target.value)} placeholder="nightly batch" className="w-72 max-w-full" />
         <SelectField label="Expires" value={life} onChange={(event) => setLife(event.target.value)}>{DAYS.map((each) => <option key={each} value={each}>in {each} days</option>)}<option value="date">on a date</option><option value="never">never</option></SelectField>
-        {life === "date" && <Field label="Last day" type="date" required min={dayText(Date.now())} max={dayText(Date.now() + 364 * DAY_MS)} value={day} onChange={(event) => setDay(event.target.value)} />}
+        {life === "date" && <Field label="Last day" type="date" required min={days.first} max={days.last} value={day} onChange={(event) => setDay(event.target.value)} />}
       </div>
       <fieldset className="flex flex-col text-sm">
         <legend className="mb-1 text-dim">It may</legend>

@@ -1,6 +1,6 @@
 "use client";
 import { useInfiniteQuery, useQueryClient } from "@tanstack/react-query";
-import { useState } from "react";
+import { useRef, useState } from "react";
 import { Button } from "@/components/ui/button";
 import { ConfirmDialog } from "@/components/ui/confirm-dialog";
 import { DataTable, type TableColumn } from "@/components/ui/data-table";
@@ -34,12 +34,18 @@ export function TokenPage({ scopes, isAdministrator }: { scopes: readonly Scope[
   const [made, setMade] = useState<TokenCreated | null>(null);
   const [asked, setAsked] = useState<Token | null>(null);
   const [failure, setFailure] = useState("");
+  const [said, setSaid] = useState("");
+  const table = useRef<HTMLDivElement>(null);
   const list = useInfiniteQuery({
     queryKey: ["tokens", owner], initialPageParam: undefined as string | undefined,
     queryFn: ({ pageParam }) => listTokens({ owner, limit: 50, cursor: pageParam }), getNextPageParam: (page) => page.nextCursor ?? undefined,
   });
   const refresh = (): void => void client.invalidateQueries({ queryKey: ["tokens"] });
-  const revoke = (token: Token): void => { setFailure(""); revokeToken(token.id).then(refresh, (error: unknown) => setFailure(error instanceof Error ? error.message : "Revoking failed.")); };
+  const revoke = (token: Token): void => {
+    setFailure("");
+    // The button that was pressed goes; the table it stood in takes the focus.
+    revokeToken(token.id).then(() => { setSaid(`“${token.name}” is revoked.`); table.current?.focus(); refresh(); }, (error: unknown) => setFailure(error instanceof Error ? error.message : "Revoking failed."));
+  };
   return (
     <Page title="API tokens" isWide lead="A token lets a script work in your name, within its scopes. Send it as Authorization: Bearer …; a revoked one fails on its next call.">
       <Section title="New token">
@@ -48,8 +54,9 @@ export function TokenPage({ scopes, isAdministrator }: { scopes: readonly Scope[
       </Section>
       <Section title={owner === "me" ? "Your tokens" : "Everyone’s tokens"} actions={isAdministrator && <Button onClick={() => setOwner(owner === "me" ? "all" : "me")}>{owner === "me" ? "Show everyone’s" : "Show mine"}</Button>}>
         {failure && <p role="alert" className="text-sm text-bad">{failure}</p>}
+        <p role="status" className={said ? "text-sm text-dim" : "sr-only"}>{said}</p>
         {!list.data ? <LoadState error={list.error} onRetry={() => void list.refetch()} />
-          : <DataTable label="Tokens" columns={columns(owner === "all", setAsked)} items={list.data.pages.flatMap((page) => page.tokens)} keyOf={(token) => token.id} empty="No token yet." />}
+          : <DataTable label="Tokens" columns={columns(owner === "all", setAsked)} items={list.data.pages.flatMap((page) => page.tokens)} keyOf={(token) => token.id} empty="No token yet." regionRef={table} />}
         <LoadMore hasMore={list.hasNextPage} isLoading={list.isFetchingNextPage} onMore={() => void list.fetchNextPage()} />
       </Section>
       <ConfirmDialog isOpen={asked !== null} title={`Revoke “${asked?.name ?? ""}”?`} action="Revoke it" onClose={() => setAsked(null)} onConfirm={() => { if (asked) revoke(asked); }}>

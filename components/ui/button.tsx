@@ -11,6 +11,6 @@ export type ButtonKind = keyof typeof LOOKS;
 export function Button({ kind = "plain", className = "", buttonRef, ...rest }: ButtonHTMLAttributes<HTMLButtonElement> & { kind?: ButtonKind; buttonRef?: Ref<HTMLButtonElement> }) {
   return (
     <button type="button" ref={buttonRef} {...rest}
-      className={`inline-flex min-h-9 items-center justify-center gap-2 whitespace-nowrap rounded border px-3 text-sm disabled:opacity-60 ${LOOKS[kind]} ${className}`} />
+      className={`inline-flex min-h-9 items-center justify-center gap-2 whitespace-nowrap rounded border px-3 text-sm disabled:opacity-60 print:hidden ${LOOKS[kind]} ${className}`} />
   );
 }

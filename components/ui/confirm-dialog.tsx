@@ -13,7 +13,7 @@ export function ConfirmDialog({ isOpen, title, children, action, onConfirm, onCl
     if (!isOpen && element.open) element.close();
   }, [isOpen]);
   return (
-    <dialog ref={dialog} onClose={onClose} aria-labelledby={id} className="m-auto w-full max-w-md rounded border border-line bg-raised p-5 text-ink backdrop:bg-scrim">
+    <dialog ref={dialog} onClose={onClose} onCancel={onClose} aria-labelledby={id} className="m-auto w-full max-w-md rounded border border-line bg-raised p-5 text-ink backdrop:bg-scrim">
       <h2 id={id} className="text-base font-semibold">{title}</h2>
       <div className="mt-2 text-sm text-dim">{children}</div>
       <div className="mt-5 flex justify-end gap-2">

@@ -1,4 +1,4 @@
-import type { ReactNode } from "react";
+import type { ReactNode, Ref } from "react";
 
 export interface TableColumn<T> {
   title: string;
@@ -9,10 +9,10 @@ export interface TableColumn<T> {
 }
 
 /** A plain table that scrolls in its own box on narrow screens. */
-export function DataTable<T>({ label, columns, items, keyOf, empty }: { label: string; columns: readonly TableColumn<T>[]; items: readonly T[]; keyOf: (item: T) => string | number; empty: ReactNode }) {
+export function DataTable<T>({ label, columns, items, keyOf, empty, regionRef }: { label: string; columns: readonly TableColumn<T>[]; items: readonly T[]; keyOf: (item: T) => string | number; empty: ReactNode; regionRef?: Ref<HTMLDivElement> }) {
   if (items.length === 0) return <p className="rounded border border-dashed border-line px-4 py-6 text-sm text-dim">{empty}</p>;
   return (
-    <div role="region" aria-label={label} tabIndex={0} className="overflow-x-auto">
+    <div ref={regionRef} role="region" aria-label={label} tabIndex={0} className="relative overflow-x-auto">
       <table className="w-full text-sm">
         <thead>
           <tr className="border-b border-line text-left text-xs text-dim">

@@ -35,11 +35,11 @@ describe("a chart of curves", () => {
   });
 
   it("tells cases apart by dash or by mark, not by colour alone, in the picture and in its legend", () => {
-    const curves = ["a", "b", "c", "d"].map((label, k) => curve(label, [1, k], [2, k + 1]));
+    const curves = ["a", "b", "c", "d", "e", "f", "g", "h"].map((label, k) => curve(label, [1, k], [2, k + 1]));
     const styles = (selector: string, of: (element: Element) => string): string[] => [...picture().querySelectorAll(selector)].map(of);
     draw(curves);
     const dashes = styles("path[stroke-width='1.8']", (path) => path.getAttribute("stroke-dasharray") ?? "");
-    expect(new Set(dashes).size).toBe(4);
+    expect(new Set(dashes).size).toBe(curves.length);
     expect(styles("line[stroke-width='1.8']", (line) => line.getAttribute("stroke-dasharray") ?? "")).toEqual(dashes);
     cleanup();
     draw(curves, { asPoints: true });
