@@ -15,7 +15,7 @@ export function CompletionList({ list, onTake }: { list: OpenList; onTake: (inde
       {list.options.map((option, index) => (
         <li key={option.insert + index} id={optionId(index)} role="option" aria-selected={index === list.active}
           onMouseDown={(event) => { event.preventDefault(); onTake(index); }}
-          className={`flex min-h-6 cursor-default items-baseline justify-between gap-6 px-3 py-0.5 text-sm ${index === list.active ? "bg-select text-ink" : "text-ink"}`}>
+          className={`flex min-h-7 cursor-default items-baseline justify-between gap-6 px-3 py-0.5 text-sm ${index === list.active ? "bg-select text-ink" : "text-ink"}`}>
           <span className="whitespace-pre"><FormulaText>{option.insert}</FormulaText></span>
           <span className="truncate text-xs text-dim">{option.detail}</span>
         </li>

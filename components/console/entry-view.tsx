@@ -56,13 +56,13 @@ export const EntryView = memo(function EntryView({ entry, isNewest, actions }: {
       <header className="mb-2 flex flex-wrap items-baseline gap-x-3">
         <span className="text-accent">#{entry.number}</span>
         <span className="min-w-0 break-words text-sm text-ink"><FormulaText>{entry.line}</FormulaText></span>
-        {from !== null && <a href={`#entry-${from}`} className="min-h-6 text-xs text-dim underline-offset-4 hover:underline">from #{from}</a>}
+        {from !== null && <a href={`#entry-${from}`} className="min-h-7 text-xs text-dim underline-offset-4 hover:underline">from #{from}</a>}
       </header>
       <EntryAnswer entry={entry} actions={actions} />
       <footer className="mt-2 flex flex-wrap gap-x-4 text-xs">
         {offersFor(entry).map((offer) => (
           <button key={offer.label} type="button" onClick={() => (offer.isWhole ? actions.onRun(offer.line) : actions.onTry(offer.line))}
-            className="min-h-6 text-dim underline-offset-4 hover:text-accent hover:underline focus-visible:text-accent">{offer.label}</button>
+            className="min-h-7 text-dim underline-offset-4 hover:text-accent hover:underline focus-visible:text-accent">{offer.label}</button>
         ))}
       </footer>
     </article>

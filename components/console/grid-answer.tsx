@@ -40,7 +40,7 @@ export const GridAnswer = memo(function GridAnswer({ body, actions, number }: { 
       <p className="flex flex-wrap items-baseline gap-x-3 text-xs text-dim">
         <span>chart also</span>
         {columns.filter((name) => name !== body.y && !name.startsWith("SI:")).concat(columns.includes("SI:calcite") && body.y !== "SI:calcite" ? ["SI:calcite"] : []).map((name) => (
-          <button key={name} type="button" onClick={() => actions.onRun(`chart #${number} ${name}`)} className="min-h-6 underline-offset-4 hover:text-accent hover:underline"><FormulaText>{name}</FormulaText></button>
+          <button key={name} type="button" onClick={() => actions.onRun(`chart #${number} ${name}`)} className="min-h-7 underline-offset-4 hover:text-accent hover:underline"><FormulaText>{name}</FormulaText></button>
         ))}
       </p>
       {summary.ok < summary.rows && <p className="text-sm text-bad">{summary.rows - summary.ok} of {summary.rows} points have no answer: <FormulaText>{String(body.response.rows.find((row) => row.status !== "ok")?.message ?? "")}</FormulaText></p>}
@@ -61,7 +61,7 @@ function GridTable({ body, columns }: { body: Grid; columns: readonly string[] }
   const axis = axisColumn(body);
   return (
     <details className="text-sm">
-      <summary className="min-h-6 cursor-pointer text-xs leading-6 text-dim">{body.response.rows.length} rows as a table</summary>
+      <summary className="min-h-7 cursor-pointer text-xs leading-6 text-dim">{body.response.rows.length} rows as a table</summary>
       <div className="max-h-80 overflow-auto" tabIndex={0} role="region" aria-label="Rows of the range">
         <table className="w-full text-xs">
           <thead className="sticky top-0 bg-page"><tr>

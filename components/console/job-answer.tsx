@@ -19,7 +19,7 @@ export const JobAnswer = memo(function JobAnswer({ jobId, title, showChart }: { 
   return (
     <div className="space-y-2 text-sm">
       <p className="flex flex-wrap items-baseline gap-x-4">
-        <Link href={`/jobs/${job.id}`} className="min-h-6 text-accent underline-offset-4 hover:underline">{job.title}</Link>
+        <Link href={`/jobs/${job.id}`} className="min-h-7 text-accent underline-offset-4 hover:underline">{job.title}</Link>
         <span className={job.status === "failed" ? "text-bad" : job.status === "done" ? "text-good" : "text-ink"}>{job.status}</span>
         {job.queue && job.status === "queued" && <span className="text-dim">{grouped(job.queue.rowsAhead)} rows ahead</span>}
       </p>

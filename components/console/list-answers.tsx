@@ -15,12 +15,12 @@ export function JobsAnswer({ jobs, onTry }: { jobs: readonly Job[]; onTry: (line
         <tbody>
           {jobs.map((job) => (
             <tr key={job.id} className="align-baseline">
-              <td className="max-w-80 truncate pr-4"><Link href={`/jobs/${job.id}`} className="inline-block min-h-6 text-accent underline-offset-4 hover:underline">{job.title}</Link></td>
+              <td className="max-w-80 truncate pr-4"><Link href={`/jobs/${job.id}`} className="inline-block min-h-7 text-accent underline-offset-4 hover:underline">{job.title}</Link></td>
               <td className={`pr-4 ${job.status === "failed" ? "text-bad" : job.status === "running" ? "text-accent" : ""}`}>{job.status}</td>
               <td className="pr-4 text-right tabular-nums">{grouped(job.counts.rows)}</td>
               <td className="pr-4 text-right tabular-nums">{grouped(job.counts.ok)}</td>
               <td className="whitespace-nowrap pr-4 tabular-nums text-dim">{dated(job.createdAt)}</td>
-              <td><button type="button" className="min-h-6 text-dim underline-offset-4 hover:text-accent hover:underline" onClick={() => onTry(`job ${job.id}`)}>follow here</button></td>
+              <td><button type="button" className="min-h-7 text-dim underline-offset-4 hover:text-accent hover:underline" onClick={() => onTry(`job ${job.id}`)}>follow here</button></td>
             </tr>
           ))}
         </tbody>
@@ -38,12 +38,12 @@ export function SetsAnswer({ sets, onTry }: { sets: readonly SampleSet[]; onTry:
         <tbody>
           {sets.map((set) => (
             <tr key={set.id} className="align-baseline">
-              <td className="max-w-80 truncate pr-4"><Link href={`/samples/${set.id}`} className="inline-block min-h-6 text-accent underline-offset-4 hover:underline">{set.name}</Link></td>
+              <td className="max-w-80 truncate pr-4"><Link href={`/samples/${set.id}`} className="inline-block min-h-7 text-accent underline-offset-4 hover:underline">{set.name}</Link></td>
               <td className="pr-4 text-right tabular-nums">{grouped(set.waterCount)}</td>
               <td className="pr-4 text-right tabular-nums">{set.version}</td>
               <td className={`pr-4 text-right tabular-nums ${set.flagCount > 0 ? "text-warn" : "text-dim"}`}>{set.flagCount}</td>
               <td className="whitespace-nowrap pr-4 tabular-nums text-dim">{dated(set.updatedAt)}</td>
-              <td><button type="button" className="min-h-6 text-dim underline-offset-4 hover:text-accent hover:underline" onClick={() => onTry(`submit over "${set.name}"`)}>submit over it</button></td>
+              <td><button type="button" className="min-h-7 text-dim underline-offset-4 hover:text-accent hover:underline" onClick={() => onTry(`submit over "${set.name}"`)}>submit over it</button></td>
             </tr>
           ))}
         </tbody>

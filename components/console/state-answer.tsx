@@ -90,7 +90,7 @@ function Saturations({ row }: { row: Record<string, unknown> }) {
       </table>
       {rest.length > 0 && (
         <details className="text-xs text-dim">
-          <summary className="min-h-6 cursor-pointer leading-6">{rest.length} further below</summary>
+          <summary className="min-h-7 cursor-pointer leading-6">{rest.length} further below</summary>
           <FormulaText>{rest.map(({ solid, index }) => `${solid} ${signed(index, 2)}`).join(" · ")}</FormulaText>
         </details>
       )}
@@ -127,7 +127,7 @@ function Species({ row }: { row: Record<string, unknown> }) {
       </ul>
       {rest.length > 0 && (
         <details className="text-xs text-dim">
-          <summary className="min-h-6 cursor-pointer leading-6">{rest.length} smaller</summary>
+          <summary className="min-h-7 cursor-pointer leading-6">{rest.length} smaller</summary>
           <ul className="grid grid-cols-2 gap-x-6">
             {rest.map(({ name, mmol }) => <li key={name} className="flex justify-between gap-3"><span><FormulaText>{name}</FormulaText></span><span className="tabular-nums">{significant(mmol, 3)}</span></li>)}
           </ul>

@@ -20,7 +20,7 @@ export function Welcome({ onTry }: { onTry: (line: string) => void }) {
       <ul className="mt-4 space-y-2">
         {EXAMPLES.map(({ line, says }) => (
           <li key={line}>
-            <button type="button" onClick={() => onTry(line)} className="min-h-6 max-w-full text-left text-sm text-accent underline-offset-4 hover:underline"><FormulaText>{line}</FormulaText></button>
+            <button type="button" onClick={() => onTry(line)} className="min-h-7 max-w-full text-left text-sm text-accent underline-offset-4 hover:underline"><FormulaText>{line}</FormulaText></button>
             <span className="block text-xs text-dim">{says}</span>
           </li>
         ))}

@@ -19,7 +19,7 @@ const COLOURS: Record<Job["status"], string> = { queued: "text-dim", running: "t
 const STATUSES = ["queued", "running", "done", "failed", "cancelled"] as const;
 
 const COLUMNS: readonly TableColumn<Job>[] = [
-  { title: "job", className: "min-w-44", cell: (job) => <Link href={`/jobs/${job.id}`} className="inline-flex min-h-6 items-center text-accent underline-offset-4 hover:underline"><span><FormulaText>{job.title}</FormulaText></span></Link> },
+  { title: "job", className: "min-w-44", cell: (job) => <Link href={`/jobs/${job.id}`} className="inline-flex min-h-7 items-center text-accent underline-offset-4 hover:underline"><span><FormulaText>{job.title}</FormulaText></span></Link> },
   { title: "status", cell: (job) => <Standing job={job} /> },
   { title: "rows", isRight: true, cell: (job) => grouped(job.counts.rows) },
   { title: "ok", isRight: true, cell: (job) => grouped(job.counts.ok) },

@@ -12,7 +12,7 @@ import { grouped } from "@/lib/commands/numbers";
 import type { SampleSet } from "@/lib/schemas/api";
 
 const COLUMNS: readonly TableColumn<SampleSet>[] = [
-  { title: "sample set", className: "min-w-44", cell: (set) => <Link href={`/samples/${set.id}`} className="inline-flex min-h-6 items-center text-accent underline-offset-4 hover:underline">{set.name}</Link> },
+  { title: "sample set", className: "min-w-44", cell: (set) => <Link href={`/samples/${set.id}`} className="inline-flex min-h-7 items-center text-accent underline-offset-4 hover:underline">{set.name}</Link> },
   { title: "waters", isRight: true, cell: (set) => grouped(set.waterCount) },
   { title: "version", isRight: true, cell: (set) => set.version },
   { title: "findings", isRight: true, cell: (set) => <span className={set.flagCount > 0 ? "text-warn" : "text-dim"}>{grouped(set.flagCount)}</span> },

@@ -59,7 +59,7 @@ function Faults({ faults, serverIssues, onShow, onShowOffset }: SidebarProps) {
   const all = [...faults.issues, ...serverIssues.filter((issue) => !seen.has(issue.pointer + issue.message))];
   if (faults.syntax) {
     const { at, message } = faults.syntax;
-    return <section><h2 className="text-xs text-dim">faults</h2><button type="button" onClick={() => onShowOffset(at)} className="min-h-6 text-left text-sm text-bad underline-offset-4 hover:underline">{message}</button></section>;
+    return <section><h2 className="text-xs text-dim">faults</h2><button type="button" onClick={() => onShowOffset(at)} className="min-h-7 text-left text-sm text-bad underline-offset-4 hover:underline">{message}</button></section>;
   }
   if (all.length === 0) return <p className="text-sm text-good">No faults.</p>;
   return (
@@ -68,7 +68,7 @@ function Faults({ faults, serverIssues, onShow, onShowOffset }: SidebarProps) {
       <ul className="space-y-1.5 text-sm">
         {all.map((issue, index) => (
           <li key={index}>
-            <button type="button" onClick={() => onShow(issue.pointer)} className="min-h-6 text-left underline-offset-4 hover:underline">
+            <button type="button" onClick={() => onShow(issue.pointer)} className="min-h-7 text-left underline-offset-4 hover:underline">
               <code className="mr-2 text-xs text-bad">{issue.pointer || "/"}</code><FormulaText>{issue.message}</FormulaText>
             </button>
             {issue.remedy && <span className="block text-xs text-dim"><FormulaText>{issue.remedy}</FormulaText></span>}
@@ -123,9 +123,9 @@ function Templates({ sets, onTemplate }: Pick<SidebarProps, "sets" | "onTemplate
       <ul className="space-y-1 text-sm">
         {TEMPLATES.map((template) => (
           <li key={template.id} className="flex flex-wrap items-baseline gap-x-3">
-            <button type="button" onClick={() => onTemplate(template, chosen)} className="min-h-6 text-accent underline-offset-4 hover:underline">{template.title}</button>
+            <button type="button" onClick={() => onTemplate(template, chosen)} className="min-h-7 text-accent underline-offset-4 hover:underline">{template.title}</button>
             {template.id === "set" && sets.length > 0 ? (
-              <select aria-label="Sample set" value={chosen?.id ?? ""} onChange={(event) => setSetId(event.target.value)} className="min-h-6 max-w-56 rounded border border-line bg-raised px-1 text-xs text-ink">
+              <select aria-label="Sample set" value={chosen?.id ?? ""} onChange={(event) => setSetId(event.target.value)} className="min-h-7 max-w-56 rounded border border-line bg-raised px-1 text-xs text-ink">
                 {sets.map((set) => <option key={set.id} value={set.id}>{set.name}</option>)}
               </select>
             ) : <span className="text-xs text-dim">{template.says}</span>}
