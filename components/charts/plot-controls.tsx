@@ -49,7 +49,7 @@ export function PlotControls({ columns, choice, waters, isLogX, isLogY, onChange
   );
 }
 
-const BOX = "min-h-8 max-w-52 rounded border border-line bg-raised px-1.5";
+const BOX = "min-h-8 max-w-52 rounded border border-faint/75 bg-raised px-1.5";
 
 function Select({ label, value, onChange, children }: { label: string; value: string; onChange: (value: string) => void; children: ReactNode }) {
   const id = useId();

@@ -2,6 +2,7 @@
 import { memo, type ReactNode } from "react";
 import type { EntryBody } from "@/lib/commands/entry";
 import { judgeIonBalance } from "@/lib/commands/ion-balance";
+import { Caution } from "@/components/ui/caution";
 import { FormulaText } from "@/components/ui/formula-text";
 import { fixed, signed, significant } from "@/lib/commands/numbers";
 import { assumptionsOf, balanceText, figuresOf, saturationsOf, saturationWord, speciesOf, transfersOf } from "./state-facts";
@@ -24,6 +25,7 @@ export const StateAnswer = memo(function StateAnswer({ body }: { body: State }) 
       <Transfers row={row} />
       <p className="text-xs leading-5 text-dim"><span className="text-ink">Assumed:</span> <FormulaText>{assumptionsOf(body.spec).join(" · ")}</FormulaText></p>
       <Warnings warnings={warnings} />
+      {body.spec.cases[0].react && <Caution />}
     </div>
   );
 });

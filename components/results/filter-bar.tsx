@@ -29,7 +29,7 @@ export function FilterBar({ columns, where, rowCount, total, isPartial, serverEr
         <label htmlFor={id} className="whitespace-nowrap text-dim">Rows where</label>
         <input id={id} ref={field} value={text} list={`${id}-columns`} onChange={(event) => { setText(event.target.value); setProblem(""); }} placeholder="SI:calcite > 0.5"
           aria-invalid={fault ? true : undefined} aria-describedby={`${id}-fault`} autoComplete="off" spellCheck={false}
-          className="min-h-8 w-52 min-w-0 rounded border border-line bg-raised px-2 placeholder:text-faint aria-[invalid=true]:border-bad" />
+          className="min-h-8 w-52 min-w-0 rounded border border-faint/75 bg-raised px-2 placeholder:text-faint aria-[invalid=true]:border-bad" />
         <datalist id={`${id}-columns`}>{columns.map((column) => <option key={column.name} value={`${column.name} ${column.type === "text" ? "=" : ">"} `} />)}</datalist>
       </form>
       {where.map((condition) => (

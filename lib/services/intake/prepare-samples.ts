@@ -2,7 +2,7 @@
  * An upload of waters, JSON or CSV, from bytes to what is stored. Runs in the request for small uploads and in a thread
  * for large ones: the waters leave it as ready JSON texts, one per stored chunk.
  */
-import { checkTable } from "@/lib/chemistry/check-spec";
+import { checkTable, MOST_ISSUES } from "@/lib/chemistry/check-spec";
 import { checkWaters } from "@/lib/chemistry/resolve-job";
 import type { Issue } from "@/lib/errors";
 import { sampleSetCreate, sampleSetVersionCreate } from "@/lib/schemas/api";
@@ -131,9 +131,9 @@ export function prepareSamples(document: SampleDocument): PreparedSamples {
   if (rows.length > WATERS_MAX) {
     draft.issues.push({ pointer: "/rows", code: "too-many-waters", message: `The upload has ${rows.length} waters; a sample set holds up to ${WATERS_MAX}.`, remedy: "Split it." });
   }
-  if (draft.issues.length > 0) return { ...kept, ...empty, issues: draft.issues };
   nameWaters(rows);
-  const issues = documentIssues(draft);
+  // Faults of reading and faults of what was read come at once, as far as both can be told.
+  const issues = [...draft.issues, ...(rows.length <= WATERS_MAX ? documentIssues(draft) : [])].slice(0, MOST_ISSUES);
   if (issues.length > 0) return { ...kept, ...empty, issues };
   const chunks: string[] = [];
   for (let at = 0; at < rows.length; at += WATERS_PER_CHUNK) chunks.push(JSON.stringify(rows.slice(at, at + WATERS_PER_CHUNK)));

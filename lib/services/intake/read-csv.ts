@@ -70,7 +70,7 @@ function readHeadings(record: string[], flags: SampleFlag[], issues: Issue[]): H
 }
 
 /** Reads one cell into the row. A text in a number's place becomes an issue; nothing is dropped silently. */
-function placeCell(row: Record<string, unknown>, { column, heading }: HeadedColumn, raw: string, style: NumberStyle, fault: (code: string, message: string) => void): void {
+function placeCell(row: Record<string, unknown>, { column, heading }: HeadedColumn, raw: string, style: NumberStyle, fault: (code: string, message: string, remedy: string) => void): void {
   if (column.kind === "text") {
     if (raw !== "") row[column.key] = raw;
     return;
@@ -80,13 +80,13 @@ function placeCell(row: Record<string, unknown>, { column, heading }: HeadedColu
   if (column.kind === "date") {
     const date = readDate(raw);
     if (date) row[column.key] = date;
-    else fault("unreadable-date", `“${raw.slice(0, 40)}” under “${heading}” is no date; write 2026-10-14.`);
+    else fault("unreadable-date", `“${raw.slice(0, 40)}” under “${heading}” is no date.`, "Write 2026-10-14.");
   } else if (cell.kind === "text") {
     // "1.2 mg/L" and the like: the job spec's own quantities.
     if (column.kind === "quantity" && /^[<≤]?\s*[\d.,]/.test(cell.text)) row[column.key] = style === "comma" ? cell.text.replace(",", ".") : cell.text;
-    else fault("unreadable-value", `“${raw.slice(0, 40)}” under “${heading}” is no number.`);
+    else fault("unreadable-value", `“${raw.slice(0, 40)}” under “${heading}” is no number.`, "Write a number, a number with its unit, or leave the cell empty.");
   } else if (cell.isBelow) {
-    if (column.kind !== "quantity") fault("unreadable-value", `“${raw.slice(0, 40)}” under “${heading}”: only amounts can be below a limit.`);
+    if (column.kind !== "quantity") fault("unreadable-value", `“${raw.slice(0, 40)}” under “${heading}”: only amounts can be below a limit.`, "Write the measured number, or leave the cell empty.");
     else row[column.key] = { value: cell.value, below: true, ...(column.unit ? unitParts(column.unit) : {}) };
   } else {
     row[column.key] = cell.value;
@@ -120,8 +120,8 @@ export function readCsv(bytes: Uint8Array): ReadCsv {
   const rows = body.map(({ record, line }, index) => {
     const row: Record<string, unknown> = {};
     for (const headed of columns) {
-      placeCell(row, headed, record[headed.at] ?? "", style, (code, message) =>
-        issues.push({ pointer: `/rows/${index}/${headed.column.key}`, code, message: `Line ${line}: ${message}`, value: (record[headed.at] ?? "").slice(0, 80) }));
+      placeCell(row, headed, record[headed.at] ?? "", style, (code, message, remedy) =>
+        issues.push({ pointer: `/rows/${index}/${headed.column.key}`, code, message: `Line ${line}: ${message}`, value: (record[headed.at] ?? "").slice(0, 80), remedy }));
     }
     return row;
   });
