@@ -68,7 +68,7 @@ export function Console({ me }: { me: Pick<Me, "id" | "role"> }) {
 
   return (
     <div onKeyDown={onKeyDown} className="flex h-full min-h-0 flex-col">
-      <div ref={scroller} role="log" aria-label="Stream" aria-live="off" tabIndex={-1} className="min-h-0 flex-1 overflow-y-auto outline-none">
+      <div ref={scroller} role="log" aria-label="Stream" aria-live="off" tabIndex={-1} className="relative min-h-0 flex-1 overflow-y-auto outline-none">
         <div className="mx-auto w-full max-w-6xl">
           {stream.isLoaded && count === 0 && <Welcome onTry={fill} />}
           {count > shown && (

@@ -147,7 +147,6 @@ function Transfers({ row }: { row: Record<string, unknown> }) {
       {all.map(({ what, mmol }, index) => (
         <span key={what}>{index > 0 && " · "}<FormulaText>{what}</FormulaText> {what === "CO2 gas" ? (mmol > 0 ? "taken up" : "given off") : mmol > 0 ? "dissolved" : "formed"} <span className="tabular-nums">{significant(Math.abs(mmol), 4)}</span> mmol/kg</span>
       ))}
-      {all.some((each) => each.what !== "CO2 gas") && <span className="mt-0.5 block text-xs leading-5 text-dim">An estimate under the stated assumptions; confirm by measurement before anything is dosed or changed.</span>}
     </p>
   );
 }

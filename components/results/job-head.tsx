@@ -73,7 +73,7 @@ function Counts({ job, onShow }: Pick<HeadProps, "job" | "onShow">) {
   const { counts } = job;
   const shown = ([["ok", counts.ok, "text-good"], ["invalid", counts.invalid, "text-bad"], ["not-converged", counts.notConverged, "text-bad"]] as const).filter(([name, count]) => name === "ok" || count > 0);
   return (
-    <p className="mt-2 flex flex-wrap gap-x-4 gap-y-1 text-sm tabular-nums">
+    <p className="mt-2 flex flex-wrap items-center gap-x-4 gap-y-1 text-sm tabular-nums">
       <span>{grouped(counts.rows)} rows</span>
       {shown.map(([name, count, colour]) => (
         <button key={name} type="button" onClick={() => onShow((where) => whereStatus(where, name))} className={`min-h-7 ${colour} underline-offset-4 hover:underline`} title={`Show the rows that are ${name}`}>{grouped(count)} {name}</button>
