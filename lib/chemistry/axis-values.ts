@@ -1,4 +1,5 @@
 /** The values of an axis, as shown and in base units. */
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
 import { axisField, type Field } from "@/lib/chemistry/fields";
 import { isProblem, type Quantity, type QuantityProblem, readQuantity } from "@/lib/chemistry/quantity";
 import type { ResolvedAxis } from "@/lib/chemistry/types";
@@ -25,8 +26,8 @@ function shownUnit(axis: SpecAxis, field: Field, units: Readonly<Record<string, 
  * Reads an axis. Values are spaced evenly in the shown unit (or in its logarithm), both ends exactly as written.
  * @returns the axis, or every value that cannot be read.
  */
-export function readAxis(axis: SpecAxis, units: Readonly<Record<string, string>>): ResolvedAxis | AxisProblem[] {
-  const field = axisField(axis.field);
+export function readAxis(axis: SpecAxis, units: Readonly<Record<string, string>>, set: ConstantsSet = BUILT_IN): ResolvedAxis | AxisProblem[] {
+  const field = axisField(axis.field, set);
   if (!field) return [{ at: "field", code: "unknown-field", message: `Nothing is called “${axis.field}” that could vary.`, remedy: "" }];
   const unit = shownUnit(axis, field, units);
   const split = splitUnit(unit);

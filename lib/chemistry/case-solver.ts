@@ -31,6 +31,10 @@ export interface CaseSolver {
   residual: number;
   /** Newton iterations of the row. */
   iterations: number;
+  /** Counts the rows begun, so that what is kept of one is not taken for the next. */
+  serial: number;
+  /** Where set, is shown each certified state of a row, in order; what it is shown is overwritten by the next. */
+  onState: ((claim: Claim, constants: Constants) => void) | null;
   solve(water: ResolvedWater, point: number): void;
 }
 
@@ -49,14 +53,14 @@ interface Parts {
 }
 
 export function makeCaseSolver(job: ResolvedJob, kase: ResolvedCase): CaseSolver {
-  const model = buildModel(kase);
+  const model = buildModel(kase, job.constantsSet);
   const kernel = makeKernel(model.tableau, model.phases);
   const reader = makeInputReader(model, kase, job.axes);
   const traits = caseTraits(model, kase);
   const solver: CaseSolver = {
     model, kernel, kase, traits, facts: usedFacts(kase), input: reader.input, present: new Uint8Array(model.components.length),
     reaction: makeReaction(model, caseSolids(model, kase)),
-    status: STATUS.ok, message: "", warnings: [], residual: NaN, iterations: 0,
+    status: STATUS.ok, message: "", warnings: [], residual: NaN, iterations: 0, serial: 0, onState: null,
     solve: (water, point) => solveRow(parts, water, point),
   };
   const parts: Parts = {
@@ -77,6 +81,7 @@ function fail(solver: CaseSolver, status: number, message: string): void {
 
 function solveRow(parts: Parts, water: ResolvedWater, point: number): void {
   const { solver, job } = parts;
+  solver.serial++;
   solver.status = STATUS.ok;
   solver.message = "";
   solver.warnings.length = 0;
@@ -210,6 +215,7 @@ function certifySettled(parts: Parts): void {
   if (!Number.isNaN(settling.xC)) holdTie(claim, kernel.holdsCarbon, settling.xC);
   if (settling.solid >= 0) holdTie(claim, model.phases[settling.solid], settling.solidTarget);
   solver.residual = Math.max(solver.residual, certify(kernel.tableau, ws.constants, claim));
+  solver.onState?.(claim, ws.constants);
 }
 
 export function holdTie(claim: Claim, phase: Claim["tiePhase"][number], target: number): void {

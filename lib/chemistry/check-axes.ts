@@ -1,44 +1,38 @@
 /** What no schema can say about axes: fields that exist and matter, values that can be read and are in range. */
 import { type AxisProblem, readAxis, type SpecAxis } from "@/lib/chemistry/axis-values";
-import { ANALYTES, SOLIDS, SPECIES } from "@/lib/chemistry/data";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
 import { effectiveCases, factName, type SpecCase } from "@/lib/chemistry/effective-cases";
-import { axisField, ROW_FIELDS } from "@/lib/chemistry/fields";
+import { axisField, axisNames } from "@/lib/chemistry/fields";
 import { rangeProblem, shorten } from "@/lib/chemistry/quantity";
 import type { Issue } from "@/lib/errors";
 import { nearestName } from "@/lib/schemas/nearest-name";
 
 type Units = Readonly<Record<string, string>>;
 
-/** Names an axis may vary, patterns spelled out. */
-function axisNames(): string[] {
-  const solids = SOLIDS.flatMap(({ name }) => ["saturation", "supply", "logK"].map((what) => `react/solids/${name}/${what}`));
-  const constants = [...SPECIES.filter((each) => each.logK), ...SOLIDS].map(({ name }) => `constants/${name}/logK`);
-  return [...[...ROW_FIELDS.keys()].filter((key) => key !== "conductivity"), "react/gas", "close/SI", "organic/sites", ...solids, ...constants];
-}
-
 /** Every fault of the axes. */
-export function checkAxes(axes: readonly SpecAxis[], cases: readonly SpecCase[], units: Units): Issue[] {
+export function checkAxes(axes: readonly SpecAxis[], cases: readonly SpecCase[], units: Units, set: ConstantsSet = BUILT_IN): Issue[] {
   const merged = effectiveCases(cases);
   return axes.flatMap((axis, index) => {
     const pointer = `/vary/${index}`;
-    const fieldIssue = fieldProblem(axis, merged, axes, index);
+    const fieldIssue = fieldProblem(axis, merged, set) ?? repeatProblem(axes, index);
     const shape = shapeIssues(axis, pointer);
     if (fieldIssue) return [{ pointer: `${pointer}/field`, value: shorten(axis.field), ...fieldIssue }, ...shape];
-    return shape.length > 0 ? shape : valueIssues(axis, pointer, units);
+    return shape.length > 0 ? shape : valueIssues(axis, pointer, units, set);
   });
 }
 
-function fieldProblem(axis: SpecAxis, cases: readonly SpecCase[], axes: readonly SpecAxis[], index: number): Pick<Issue, "code" | "message" | "remedy"> | null {
-  const { field } = axis;
-  const constant = /^constants\/(.+)\/logK$/.exec(field)?.[1];
-  const isKnown = axisField(field) !== null && (constant === undefined || SOLIDS.some(({ name }) => name === constant) || SPECIES.some((each) => each.name === constant && each.logK));
-  if (!isKnown) {
-    const nearest = nearestName(field, axisNames());
-    return { code: "unknown-field", message: `Nothing called “${shorten(field)}” can vary.`, remedy: nearest ? `Did you mean “${nearest}”?` : `For example ${["pCO2", "ANC", "pH", "temperature", ...ANALYTES.slice(0, 3).map(({ key }) => key), "react/solids/calcite/saturation"].join(", ")}.` };
+function fieldProblem({ field }: SpecAxis, cases: readonly SpecCase[], set: ConstantsSet): Pick<Issue, "code" | "message" | "remedy"> | null {
+  if (!axisNames(set).includes(field)) {
+    const nearest = nearestName(field, axisNames(set));
+    return { code: "unknown-field", message: `Nothing called “${shorten(field)}” can vary.`, remedy: nearest ? `Did you mean “${nearest}”?` : `For example ${["pCO2", "ANC", "pH", "temperature", ...set.analytes.slice(0, 3).map(({ key }) => key), "react/solids/calcite/saturation"].join(", ")}.` };
   }
-  if (axes.findIndex((each) => each.field === field) < index) return { code: "duplicate", message: `Two axes vary ${field}.`, remedy: "Take one of them out." };
   const idle = idleReason(field, cases);
   return idle ? { code: "idle-axis", message: `Varying ${field} would change nothing: ${idle}.`, remedy: "Take the axis out, or let a case use it." } : null;
+}
+
+function repeatProblem(axes: readonly SpecAxis[], index: number): Pick<Issue, "code" | "message" | "remedy"> | null {
+  const { field } = axes[index];
+  return axes.findIndex((each) => each.field === field) < index ? { code: "duplicate", message: `Two axes vary ${field}.`, remedy: "Take one of them out." } : null;
 }
 
 /** Why no case would notice the axis, or null where one does. */
@@ -69,15 +63,15 @@ function shapeIssues(axis: SpecAxis, pointer: string): Issue[] {
 /** Faults of single values shown of one axis; more would say the same. */
 const MOST_VALUES = 20;
 
-function valueIssues(axis: SpecAxis, pointer: string, units: Units): Issue[] {
-  const read = readAxis(axis, units);
+function valueIssues(axis: SpecAxis, pointer: string, units: Units, set: ConstantsSet): Issue[] {
+  const read = readAxis(axis, units, set);
   const valueOf = (at: string): unknown => (at.startsWith("values/") ? axis.values?.[Number(at.slice(7))] : axis[at as "from"]);
   const issue = ({ at, ...problem }: AxisProblem): Issue => ({ pointer: `${pointer}/${at}`, ...problem, value: shorten(valueOf(at)) });
   if (Array.isArray(read)) return read.slice(0, MOST_VALUES).map(issue);
   if (axis.scale === "log" && !(read.shown[0] > 0 && read.shown[read.shown.length - 1] > 0)) {
     return [{ pointer, code: "out-of-range", message: "A logarithmic axis needs both ends above zero.", remedy: "Raise the lower end above zero, or let the scale be linear." }];
   }
-  const field = axisField(axis.field)!;
+  const field = axisField(axis.field, set)!;
   const places = axis.values ? [...read.base.keys()].map((k) => ({ k, at: `values/${k}` })) : [{ k: 0, at: "from" }, { k: read.base.length - 1, at: "to" }];
   return places.flatMap(({ k, at }) => {
     const problem = rangeProblem(read.base[k], field);

@@ -2,11 +2,11 @@
  * The chemistry of one case as a kernel tableau: which species take part, their stoichiometry over the components, their activity
  * classes, and how their constants follow from the printed reactions at any temperature.
  */
-import { SOLIDS, SPECIES } from "@/lib/chemistry/data";
-import type { Species } from "@/lib/chemistry/data/types";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import type { LogKOverT, Species } from "@/lib/chemistry/data/types";
 import { makeTableau } from "@/lib/chemistry/model-tableau";
 import { organicSpecies } from "@/lib/chemistry/organic-model";
-import { combine, makeBasis } from "@/lib/chemistry/reaction-basis";
+import { type Combination, combine, makeBasis } from "@/lib/chemistry/reaction-basis";
 import { debyeSizeFactor, debyeSlope, logKAt } from "@/lib/chemistry/temperature";
 import type { ResolvedCase } from "@/lib/chemistry/types";
 import type { Constants, Phase, Tableau } from "@/lib/kernel/tableau";
@@ -19,6 +19,7 @@ export const ORGANIC_COMPONENT = "organic";
 const GAS = "CO2(g)";
 
 export interface ChemistryModel {
+  set: ConstantsSet;
   tableau: Tableau;
   /** Names by component and species index. */
   components: string[];
@@ -31,13 +32,19 @@ export interface ChemistryModel {
   reactionIndex: Map<string, number>;
   organicComponent: number;
   organicProtons: number;
+  /** Printed reactions by index: formed species, solids, CO2(g). */
+  reactions: readonly { name: string; logK: LogKOverT }[];
+  /** Formed inorganic species from `firstForm` on, and solids, over the components and the printed log K. */
+  forms: readonly Combination[];
+  firstForm: number;
+  solidForms: readonly Combination[];
   /** @param overrides log K by reaction index, NaN where the constants set rules. */
   constantsAt(celsius: number, overrides: Float64Array): Constants;
 }
 
 /** Data of the components, hydrogen and carbon first, H2O left out. */
-function componentData(): Species[] {
-  const all = Object.values(SPECIES).filter((s) => s.reaction === null && s.name !== "H2O");
+function componentData(set: ConstantsSet): Species[] {
+  const all = set.species.filter((s) => s.reaction === null && s.name !== "H2O");
   const first = FIRST.map((name) => {
     const found = all.find((s) => s.name === name);
     if (!found) throw new Error(`constants set: component ${name} is missing from lib/chemistry/data/species`);
@@ -52,15 +59,15 @@ function isWanted(species: Species, complexes: ResolvedCase["complexes"]): boole
 }
 
 /** @param kase decides complexes, activity model and organic model; nothing else of it is read. */
-export function buildModel(kase: Pick<ResolvedCase, "complexes" | "activity" | "organic">): ChemistryModel {
-  const components = componentData();
-  const formed = Object.values(SPECIES).filter((s) => s.reaction !== null && s.name !== GAS);
+export function buildModel(kase: Pick<ResolvedCase, "complexes" | "activity" | "organic">, set: ConstantsSet = BUILT_IN): ChemistryModel {
+  const components = componentData(set);
+  const formed = set.species.filter((s) => s.reaction !== null && s.name !== GAS);
   const basis = makeBasis(components.map((s) => s.name), formed.map((s) => ({ name: s.name, reaction: s.reaction ?? {} })));
   const wanted = formed.filter((s) => isWanted(s, kase.complexes));
   const organic = organicSpecies(kase.organic);
-  const solidData = Object.values(SOLIDS);
+  const solidData = set.solids;
   const solidForms = solidData.map((s) => combine(basis, s.reaction));
-  const gas = Object.values(SPECIES).find((s) => s.name === GAS);
+  const gas = set.species.find((s) => s.name === GAS);
   if (!gas?.logK) throw new Error(`constants set: ${GAS} is missing from lib/chemistry/data/species`);
 
   const acid = organic.length > 0 ? organic[0] : null;
@@ -71,10 +78,10 @@ export function buildModel(kase: Pick<ResolvedCase, "complexes" | "activity" | "
   const n = components.length + (acid ? 1 : 0);
   const tableau = makeTableau({ n, names, data, forms, organic, organicComponent, activity: kase.activity });
 
-  const reactions: { name: string; species: Species["logK"] }[] = [
-    ...formed.map((s) => ({ name: s.name, species: s.logK })),
-    ...solidData.map((s) => ({ name: s.name, species: s.logK })),
-    { name: GAS, species: gas.logK },
+  const reactions = [
+    ...formed.map((s) => ({ name: s.name, logK: s.logK! })),
+    ...solidData.map((s) => ({ name: s.name, logK: s.logK })),
+    { name: GAS, logK: gas.logK },
   ];
   const reactionIndex = new Map(reactions.map((r, k) => [r.name, k]));
   const firstForm = n;
@@ -82,7 +89,7 @@ export function buildModel(kase: Pick<ResolvedCase, "complexes" | "activity" | "
   const count = reactions.length;
   const constantsAt = (celsius: number, overrides: Float64Array): Constants => {
     const logK = Float64Array.from(reactions, (r, k) =>
-      k < overrides.length && !Number.isNaN(overrides[k]) ? overrides[k] : logKAt(r.species!, celsius));
+      k < overrides.length && !Number.isNaN(overrides[k]) ? overrides[k] : logKAt(r.logK, celsius));
     const lnK = new Float64Array(names.length);
     forms.forEach((f, k) => { lnK[firstForm + k] = LN10 * weighted(f.logK, logK); });
     for (let j = 1; j < organic.length; j++) lnK[firstForm + forms.length + j - 1] = organic[j].lnK;
@@ -90,7 +97,7 @@ export function buildModel(kase: Pick<ResolvedCase, "complexes" | "activity" | "
     return { lnK, solidLnK, gasLnK: LN10 * logK[count - 1], debyeA: debyeSlope(celsius), debyeB: debyeSizeFactor(celsius) };
   };
   return {
-    tableau, components: [...components.map((s) => s.name), ...(acid ? [ORGANIC_COMPONENT] : [])], species: names, data,
+    set, reactions, forms, firstForm, solidForms, tableau, components: [...components.map((s) => s.name), ...(acid ? [ORGANIC_COMPONENT] : [])], species: names, data,
     solids: solidData.map((s) => s.name), phases, reactionIndex,
     organicComponent, organicProtons: Math.max(organic.length - 1, 0), constantsAt,
   };

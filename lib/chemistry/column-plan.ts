@@ -1,6 +1,7 @@
 /** Which value columns a job has: names and groups of the report, expanded over the species of its cases, with descriptions. */
-import { ANALYTES, SOLIDS } from "@/lib/chemistry/data";
 import type { CaseSolver } from "@/lib/chemistry/case-solver";
+import { BUILT_IN } from "@/lib/chemistry/constants-set";
+import { derivativeColumn, parseDerivative } from "@/lib/chemistry/sensitivity-names";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 
 /** The report of a spec that names none. */
@@ -19,6 +20,7 @@ export const MAIN_COLUMNS: Readonly<Record<string, Shape>> = {
   DIC: { unit: "mol/kg", basis: "as C", description: "Total dissolved inorganic carbon" },
   ionicStrength: { unit: "mol/kg", basis: null, description: "½ Σ c·z² over every species" },
   pCO2: { unit: "atm", basis: null, description: "Partial pressure of CO2 in equilibrium with the water (fugacity taken as pressure)" },
+  bufferIntensity: { unit: "meq/L per pH unit", basis: "as charge", description: "dC_B/dpH: strong base for one unit of pH; DIC constant in a sampled water, gas and solids acting in a reacted one; null where they hold the pH" },
   conductivity: { unit: "µS/cm", basis: null, description: "Electrical conductivity at 25 °C estimated from the free ions" },
 };
 
@@ -35,15 +37,17 @@ const shapeOf = {
 
 /**
  * The value columns of a job, in the order of the report, each once.
+ * @param units default unit per column, which derivatives by that column are taken in.
  * @throws Error for a name that is neither a column nor a group: the spec's check lets none through.
  */
-export function planColumns(report: readonly string[], cases: readonly CaseSolver[]): ColumnDescriptor[] {
+export function planColumns(report: readonly string[], cases: readonly CaseSolver[], units: Readonly<Record<string, string>> = {}): ColumnDescriptor[] {
+  const set = cases[0]?.model.set ?? BUILT_IN;
   const columns = new Map<string, ColumnDescriptor>();
   const add = (column: ColumnDescriptor) => { if (!columns.has(column.name)) columns.set(column.name, column); };
   const speciesNames = [...new Set(cases.flatMap((c) => c.model.species))];
-  const solidNames = Object.values(SOLIDS).map((s) => s.name);
+  const solidNames = set.solids.map((s) => s.name);
   const reacting = solidNames.filter((name) => cases.some((c) => c.kase.react?.solids.some((s) => s.name === name)));
-  const totals = Object.values(ANALYTES).filter((a) => a.kind === "total").map((a) => a.key);
+  const totals = set.analytes.filter((a) => a.kind === "total").map((a) => a.key);
   const groups: Record<string, () => void> = {
     species: () => speciesNames.forEach((name) => add(shapeOf.conc(name))),
     activities: () => speciesNames.forEach((name) => add(shapeOf.lgActivity(name))),
@@ -53,13 +57,14 @@ export function planColumns(report: readonly string[], cases: readonly CaseSolve
   };
   for (const name of report.length > 0 ? report : DEFAULT_REPORT) {
     if (groups[name]) { groups[name](); continue; }
-    if (MAIN_COLUMNS[name]) { add({ name, type: "number", ...MAIN_COLUMNS[name], group: "main" }); continue; }
-    add(namedColumn(name));
+    const derivative = parseDerivative(name);
+    add(derivative ? derivativeColumn(name, namedColumn(derivative.column), units, set) : namedColumn(name));
   }
   return [...columns.values()];
 }
 
 function namedColumn(name: string): ColumnDescriptor {
+  if (MAIN_COLUMNS[name]) return { name, type: "number", ...MAIN_COLUMNS[name], group: "main" };
   const colon = name.indexOf(":");
   const kind = name.slice(0, colon);
   if (colon < 0 || !(kind in shapeOf)) throw new Error(`report: ${name} is neither a column nor a group`);

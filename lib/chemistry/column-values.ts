@@ -1,6 +1,7 @@
 /** The value of each result column from the state of the row solved last. */
-import { ANALYTES, SOLIDS } from "@/lib/chemistry/data";
 import type { CaseSolver } from "@/lib/chemistry/case-solver";
+import { isSensitivity, makeSensitivity } from "@/lib/chemistry/sensitivity";
+import { conductivityIons, unconservedMetals } from "@/lib/chemistry/column-weights";
 import { totalAnalytes } from "@/lib/chemistry/row-inputs";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 import { componentSum } from "@/lib/kernel/evaluate";
@@ -14,10 +15,15 @@ const MILLI = 1e3;
 const noNumber: ColumnValue = () => NaN;
 const zero: ColumnValue = () => 0;
 
-/** One function per column, bound to a case. A species that the case leaves out has concentration 0 and no activity. */
-export function columnValues(columns: readonly ColumnDescriptor[], solver: CaseSolver): ColumnValue[] {
+/**
+ * One function per column, bound to a case. A species that the case leaves out has concentration 0 and no activity.
+ * @param units default unit per column, which derivatives by that column are taken in.
+ */
+export function columnValues(columns: readonly ColumnDescriptor[], solver: CaseSolver, units: Readonly<Record<string, string>> = {}): ColumnValue[] {
   const main = mainValues(solver);
+  const sensitivity = columns.some(({ name }) => isSensitivity(name)) ? makeSensitivity(solver, units) : null;
   return columns.map(({ name }) => {
+    if (sensitivity && isSensitivity(name)) return sensitivity.column(name);
     if (main[name]) return main[name];
     const colon = name.indexOf(":");
     return namedValue(name.slice(0, colon), name.slice(colon + 1), solver);
@@ -39,7 +45,7 @@ function namedValue(kind: string, name: string, solver: CaseSolver): ColumnValue
     }
     case "gas": return () => (solver.kase.react ? reaction.gasTaken * MILLI : 0);
     case "dissolved": {
-      const analyte = Object.values(ANALYTES).find((a) => a.key === name);
+      const analyte = model.set.analytes.find((a) => a.key === name);
       if (name === "DIC") return () => dissolvedTotal(solver, CARBON);
       const j = analyte?.component ? model.components.indexOf(analyte.component) : -1;
       return j < 0 ? noNumber : () => dissolvedTotal(solver, j);
@@ -116,20 +122,10 @@ function mainValues(solver: CaseSolver): Record<string, ColumnValue> {
   };
 }
 
-/** Metals of the carbonate solids in excess, each once. */
-function unconservedMetals(solver: CaseSolver): { component: number; strongCharge: number }[] {
-  const excess = (solver.kase.react?.solids ?? []).filter((s) => s.supply === "excess").map((s) => s.name);
-  const keys = new Set(Object.values(SOLIDS).filter((s) => excess.includes(s.name)).flatMap((s) => s.conservedWithout));
-  return totalAnalytes(solver.model).filter((a) => keys.has(a.key));
-}
-
 /** µS/cm at 25 °C: y²·Σ λ·|z|·c(meq/L) over free ions, log y² = −(√I/(1+√I) − 0.3·I) (Standard Methods 2510 A, from memory). */
 function conductivityValue(solver: CaseSolver): ColumnValue {
   const { kernel, model } = solver;
-  const ions: { index: number; weight: number }[] = [];
-  model.data.forEach((s, index) => {
-    if (s?.conductance) ions.push({ index, weight: s.conductance * Math.abs(s.charge) * MILLI });
-  });
+  const ions = conductivityIons(model);
   return () => {
     let sum = 0;
     for (const ion of ions) sum += ion.weight * kernel.ws.c[ion.index];

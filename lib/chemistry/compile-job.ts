@@ -15,8 +15,8 @@ import { type CompiledJob, type ResolvedJob, type SolvedRows, STATUS } from "@/l
  */
 export function compileJob(job: ResolvedJob): CompiledJob {
   const solvers = job.cases.map((kase) => makeCaseSolver(job, kase));
-  const columns = planColumns(job.report, solvers);
-  const readers = solvers.map((solver) => columnValues(columns, solver));
+  const columns = planColumns(job.report, solvers, job.units);
+  const readers = solvers.map((solver) => columnValues(columns, solver, job.units));
   const pointsPerCase = job.axes.reduce((product, axis) => product * axis.base.length, 1);
   const rowCount = job.waters.length * job.cases.length * pointsPerCase;
 

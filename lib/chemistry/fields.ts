@@ -1,5 +1,5 @@
 /** Every place of a spec that takes a number with a unit: what kind of number it is and what a bare one is counted in. */
-import { ANALYTES, SOLIDS } from "@/lib/chemistry/data";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
 import type { Analyte, Solid } from "@/lib/chemistry/data/types";
 
 export type FieldKind = "analyte" | "gas" | "pressure" | "temperature" | "length" | "conductivity" | "number" | "sites" | "solid";
@@ -38,8 +38,20 @@ const analyteField = (analyte: Analyte): Field => ({
   range: analyte.kind === "equivalents" ? null : { from: 0, to: Infinity, unit: "" },
 });
 
+const rowFieldsOfSet = new WeakMap<ConstantsSet, ReadonlyMap<string, Field>>();
+
 /** Fields of a row, by key. `site`, `date` and `id` are text and not among them. */
-export const ROW_FIELDS: ReadonlyMap<string, Field> = new Map([...CONDITIONS, ...ANALYTES.map(analyteField)].map((field) => [field.key, field]));
+export function rowFields(set: ConstantsSet): ReadonlyMap<string, Field> {
+  let fields = rowFieldsOfSet.get(set);
+  if (!fields) {
+    fields = new Map([...CONDITIONS, ...set.analytes.map(analyteField)].map((field) => [field.key, field]));
+    rowFieldsOfSet.set(set, fields);
+  }
+  return fields;
+}
+
+/** Those of the built-in set. */
+export const ROW_FIELDS: ReadonlyMap<string, Field> = rowFields(BUILT_IN);
 
 export const SATURATION = plain("saturation", "number", "", { from: -100, to: 100, unit: "" });
 export const LOG_K = plain("logK", "number", "", { from: -100, to: 100, unit: "" });
@@ -51,16 +63,22 @@ export function supplyField(solid: Solid): Field {
   return { key: `supply of ${solid.name}`, kind: "solid", defaultUnit: "mmol/L", analyte: null, solid, range: { from: 0, to: Infinity, unit: "" } };
 }
 
-const solidOf = (name: string): Solid | undefined => SOLIDS.find((solid) => solid.name === name);
-
 /** The field that an axis names, or null where there is none. */
-export function axisField(name: string): Field | null {
-  if (name !== "conductivity" && ROW_FIELDS.has(name)) return ROW_FIELDS.get(name)!;
+export function axisField(name: string, set: ConstantsSet = BUILT_IN): Field | null {
+  const fields = rowFields(set);
+  if (name !== "conductivity" && fields.has(name)) return fields.get(name)!;
   if (name === "organic/sites") return SITES;
   if (name === "close/SI") return SATURATION;
   if (name === "react/gas") return GAS;
   const ofSolid = /^react\/solids\/(.+)\/(saturation|supply|logK)$/.exec(name);
-  const solid = ofSolid && solidOf(ofSolid[1]);
+  const solid = ofSolid && set.solids.find((each) => each.name === ofSolid[1]);
   if (solid) return ofSolid[2] === "supply" ? supplyField(solid) : ofSolid[2] === "logK" ? LOG_K : SATURATION;
   return /^constants\/(.+)\/logK$/.test(name) ? LOG_K : null;
+}
+
+/** Every name that an axis may vary and a derivative be taken by, patterns spelled out. */
+export function axisNames(set: ConstantsSet = BUILT_IN): string[] {
+  const solids = set.solids.flatMap(({ name }) => ["saturation", "supply", "logK"].map((what) => `react/solids/${name}/${what}`));
+  const constants = [...set.species.filter((each) => each.logK), ...set.solids].map(({ name }) => `constants/${name}/logK`);
+  return [...[...rowFields(set).keys()].filter((key) => key !== "conductivity"), "react/gas", "close/SI", "organic/sites", ...solids, ...constants];
 }

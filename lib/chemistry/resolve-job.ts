@@ -34,6 +34,7 @@ export function resolveJob(spec: JobSpec, rows: readonly Readonly<Record<string,
       return read;
     }),
     missing: spec.waters.missing ?? "refuse",
+    units,
     report: spec.report && spec.report.length > 0 ? [...spec.report] : [...DEFAULT_REPORT],
     solver: { tolerance: spec.solver?.tolerance ?? TOLERANCE, maxIterations: spec.solver?.maxIterations ?? MAX_ITERATIONS },
   };

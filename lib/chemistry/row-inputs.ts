@@ -2,7 +2,6 @@
  * The numbers of one result row, gathered with the precedence of the job spec: axis, then case, then row. Filled in place; NaN means
  * not given. Everything in base units (mol/kg, eq/kg, atm, °C, m; DOC in mg C/L).
  */
-import { ANALYTES, SOLIDS } from "@/lib/chemistry/data";
 import type { ChemistryModel } from "@/lib/chemistry/chemistry-model";
 import type { Pressure, ResolvedAxis, ResolvedCase, ResolvedWater } from "@/lib/chemistry/types";
 
@@ -42,7 +41,7 @@ const FIELDS: readonly InputField[] = ["temperature", "pH", "pHTemperature", "al
 
 /** Analytes that are totals of a component, with that component's index in a model. */
 export function totalAnalytes(model: ChemistryModel): { key: string; component: number; strongCharge: number }[] {
-  return Object.values(ANALYTES)
+  return model.set.analytes
     .filter((a) => a.kind === "total" && a.component !== null)
     .map((a) => ({ key: a.key, component: model.components.indexOf(a.component ?? ""), strongCharge: a.strongCharge }));
 }
@@ -160,7 +159,7 @@ function axisSetter(field: string, model: ChemistryModel, kase: ResolvedCase, so
 }
 
 function solidSetter(name: string, what: string, model: ChemistryModel, kase: ResolvedCase, solids: readonly { index: number }[]): AxisSetter {
-  if (!Object.values(SOLIDS).some((s) => s.name === name)) throw new Error(`axis react/solids/${name}/${what}: no solid is called ${name}`);
+  if (!model.solids.includes(name)) throw new Error(`axis react/solids/${name}/${what}: no solid is called ${name}`);
   const k = solids.findIndex((s) => s.index === model.solids.indexOf(name));
   if (k < 0 || !kase.react) return ignored;
   if (what === "saturation") return (input, value) => { input.saturations[k] = value; };

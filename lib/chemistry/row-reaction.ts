@@ -184,6 +184,7 @@ function certifyReaction(solver: CaseSolver, constants: Constants, xC: number): 
   for (let k = 0; k < a.count; k++) {
     claimPhase(claim, model.phases[a.solids[k]], a.targets[k], a.amounts[k], a.isExcess[k] === 1);
   }
+  solver.onState?.(claim, constants);
   return certify(kernel.tableau, constants, claim);
 }
 

@@ -52,3 +52,35 @@ export function pressureOfFraction(fraction: number, celsius: number, altitude: 
   const total = pressureAtm ?? standardPressure(altitude ?? 0);
   return fraction * (total - vapourPressure(celsius));
 }
+
+/** d log10 K/dT, 1/K. */
+export function logKSlope(form: LogKOverT, celsius: number): number {
+  const kelvin = celsius + 273.15;
+  if (form.form === "analytic") {
+    return form.bT + (-form.cOverT / kelvin + form.dLog10T / LN10 - 2 * form.eOverT2 / (kelvin * kelvin)) / kelvin;
+  }
+  return form.reactionEnthalpy / (LN10 * GAS_CONSTANT * kelvin * kelvin);
+}
+
+/** d ln ρ/dT and d ln(εT)/dT, 1/K: all that A and B vary by. */
+function waterSlopes(t: number): { density: number; polarity: number } {
+  const top = 999.83952 + t * (16.945176 + t * (-7.9870401e-3 + t * (-46.170461e-6 + t * (105.56302e-9 - t * 280.54253e-12))));
+  const topSlope = 16.945176 + t * (2 * -7.9870401e-3 + t * (3 * -46.170461e-6 + t * (4 * 105.56302e-9 - t * 5 * 280.54253e-12)));
+  const epsilonSlope = -0.40008 + t * (2 * 9.398e-4 - t * 3 * 1.41e-6);
+  return { density: topSlope / top - 16.87985e-3 / (1 + 16.87985e-3 * t), polarity: epsilonSlope / dielectricConstant(t) + 1 / (t + 273.15) };
+}
+
+/** dA/dT and dB/dT. */
+export function debyeTemperatureSlopes(celsius: number): { a: number; b: number } {
+  const { density, polarity } = waterSlopes(celsius);
+  return { a: debyeSlope(celsius) * (0.5 * density - 1.5 * polarity), b: debyeSizeFactor(celsius) * 0.5 * (density - polarity) };
+}
+
+/** d pCO2 of a dry mole fraction by temperature, altitude and pressure, atm per °C, m and atm. */
+export function fractionSlopes(fraction: number, t: number, altitude: number | null, pressureAtm: number | null): { temperature: number; altitude: number; pressure: number } {
+  if (pressureAtm === null && altitude === null) return { temperature: 0, altitude: 0, pressure: 0 };
+  const below = 257.14 + t;
+  const exponentSlope = ((18.678 - 2 * t / 234.5) * below - (18.678 - t / 234.5) * t) / (below * below);
+  const byHeight = pressureAtm === null ? -2.25577e-5 * 5.2559 * (1 - 2.25577e-5 * (altitude ?? 0)) ** 4.2559 : 0;
+  return { temperature: -fraction * vapourPressure(t) * exponentSlope, altitude: fraction * byHeight, pressure: pressureAtm === null ? 0 : fraction };
+}

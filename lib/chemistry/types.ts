@@ -3,6 +3,7 @@
  *   job spec (words, units)  --resolveJob-->  ResolvedJob (numbers in base units)  --compileJob-->  CompiledJob (solves rows).
  * Base units: mol/kg water, eq/kg, atm, °C, m; DOC alone stays in mg C/L (chemistry.md section 8).
  */
+import type { ConstantsSet } from "@/lib/chemistry/constants-set";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 
 export type ActivityModel = "ideal" | "guntelberg" | "davies" | "debye-huckel" | "truesdell-jones";
@@ -94,6 +95,10 @@ export interface ResolvedJob {
   missing: "refuse" | "zero";
   /** Column names and groups as asked for. */
   report: string[];
+  /** Default unit per column as the spec gives it, which derivatives by that column are taken in. */
+  units?: Readonly<Record<string, string>>;
+  /** The built-in set where left out. */
+  constantsSet?: ConstantsSet;
   solver: { tolerance: number; maxIterations: number };
 }
 

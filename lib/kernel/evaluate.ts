@@ -12,9 +12,9 @@ import type { Workspace } from "./workspace";
 
 const LN10 = Math.LN10;
 /** Garrels & Christ 1965: a_w = 1 − 0.017·Σc. */
-const WATER_LOWERING = 0.017;
+export const WATER_LOWERING = 0.017;
 /** The linear law ends in nonsense near 59 mol/kg; below this activity it is held constant so that logarithms stay finite. */
-const LEAST_WATER_ACTIVITY = 0.02;
+export const LEAST_WATER_ACTIVITY = 0.02;
 
 /** Fills the coefficients of log10 γ for the temperature in `ws.constants`. Call when the constants change. */
 export function bindGamma(tableau: Tableau, ws: Workspace): void {

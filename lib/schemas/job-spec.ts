@@ -124,8 +124,8 @@ export const jobSpecSchema = z.strictObject({
   waters: watersSchema,
   cases: described(z.array(caseSchema).min(1).max(CASES_PER_SPEC), "Named sets of assumptions; every water runs through each"),
   vary: described(z.array(axisSchema).max(AXES_PER_SPEC).optional(), "Axes of a grid, crossed with waters and cases"),
-  report: described(z.array(z.string().max(200)).max(500).optional(), "Columns or column groups of the results",
-    [["pH", "ANC", "alkalinity", "pCO2", "SI"], ["species"], ["solids", "gas:CO2"]]),
+  report: described(z.array(z.string().max(200)).max(500).optional(), "Columns or column groups of the results; d:<column>/<input> is an exact derivative",
+    [["pH", "ANC", "alkalinity", "pCO2", "SI"], ["species"], ["solids", "gas:CO2"], ["d:pH/Ca", "d:pH/pCO2", "bufferIntensity"]]),
   solver: described(z.strictObject({
     tolerance: described(z.number().min(1e-15).max(1e-9).optional(), "Largest relative error of a returned state; 1e-10 where left out, at most 1e-9"),
     maxIterations: described(z.int().min(1).max(10_000).optional(), "Iterations before the sure but slow path; 100 where left out"),

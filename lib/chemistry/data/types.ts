@@ -55,14 +55,15 @@ export type AnalyteKey =
   | "Na" | "K" | "NH4" | "Ca" | "Mg" | "Sr" | "Ba" | "Al" | "Cl" | "NO3" | "NO2" | "SO4" | "F" | "PO4" | "Si" | "alkalinity" | "ANC" | "DIC" | "DOC";
 
 export interface Analyte {
-  /** Key in rows: Na, K, NH4, Ca, … alkalinity, ANC, DIC, DOC. */
-  key: AnalyteKey;
+  /** Key in rows: an AnalyteKey (Na, K, … DOC), or that of a spec's own analyte. */
+  key: string;
   /** Words of the trade that mean the same on a typed line or a CSV header, lower case. */
   synonyms: string[];
   /** Synonyms whose mass is counted in another formula than `formula`: silica as SiO2, bicarbonate as HCO3. */
   namedBasis?: Record<string, string>;
   kind: "total" | "equivalents" | "carbon" | "organic";
-  component: ComponentKey | null;
+  /** A ComponentKey, or the free species of a spec's own analyte. */
+  component: string | null;
   /** Formula a bare mass is counted in ("NO3" for NO3, "Si" for Si, "C" for DIC and DOC). */
   formula: string;
   molarMass: number;

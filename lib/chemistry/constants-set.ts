@@ -1,0 +1,11 @@
+/** The constants that a job computes with: the built-in set, or that set with a spec's own species, solids and analytes. */
+import { ANALYTES, SOLIDS, SPECIES } from "@/lib/chemistry/data";
+import type { Analyte, Solid, Species } from "@/lib/chemistry/data/types";
+
+export interface ConstantsSet {
+  species: readonly Species[];
+  solids: readonly Solid[];
+  analytes: readonly Analyte[];
+}
+
+export const BUILT_IN: ConstantsSet = { species: SPECIES, solids: SOLIDS, analytes: ANALYTES };
