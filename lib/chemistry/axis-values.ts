@@ -1,5 +1,5 @@
 /** The values of an axis, as shown and in base units. */
-import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import { axisField, type Field } from "@/lib/chemistry/fields";
 import { isProblem, type Quantity, type QuantityProblem, readQuantity } from "@/lib/chemistry/quantity";
 import type { ResolvedAxis } from "@/lib/chemistry/types";

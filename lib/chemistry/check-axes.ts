@@ -1,6 +1,6 @@
 /** What no schema can say about axes: fields that exist and matter, values that can be read and are in range. */
 import { type AxisProblem, readAxis, type SpecAxis } from "@/lib/chemistry/axis-values";
-import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import { effectiveCases, factName, type SpecCase } from "@/lib/chemistry/effective-cases";
 import { axisField, axisNames } from "@/lib/chemistry/fields";
 import { rangeProblem, shorten } from "@/lib/chemistry/quantity";

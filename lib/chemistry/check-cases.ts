@@ -1,7 +1,7 @@
 /** What no schema can say about cases: facts that go together, values that can be read, names that lead somewhere. */
-import { SOLIDS } from "@/lib/chemistry/data";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import { effectiveCases, type Fact, factName, type SpecCase } from "@/lib/chemistry/effective-cases";
-import { type Field, GAS, LOG_K, ROW_FIELDS, SATURATION, SITES, supplyField } from "@/lib/chemistry/fields";
+import { type Field, GAS, LOG_K, rowFields, SATURATION, SITES, supplyField } from "@/lib/chemistry/fields";
 import { isProblem, rangeProblem, readQuantity, shorten } from "@/lib/chemistry/quantity";
 import { pointerTo } from "@/lib/chemistry/spec-issues";
 import type { Issue } from "@/lib/errors";
@@ -10,7 +10,7 @@ import { nearestName } from "@/lib/schemas/nearest-name";
 type Units = Readonly<Record<string, string>>;
 
 /** Every fault of the cases. */
-export function checkCases(cases: readonly SpecCase[], units: Units): Issue[] {
+export function checkCases(cases: readonly SpecCase[], units: Units, set: ConstantsSet = BUILT_IN): Issue[] {
   const merged = effectiveCases(cases);
   const names = cases.map((each) => each.name);
   return cases.flatMap((each, index) => {
@@ -18,9 +18,9 @@ export function checkCases(cases: readonly SpecCase[], units: Units): Issue[] {
     return [
       ...nameIssues(cases, index, names),
       ...closeIssues(each, merged[index], path),
-      ...valueIssues(each, path, units),
+      ...valueIssues(each, path, units, set),
       ...organicIssues(each, path),
-      ...reactIssues(each, path),
+      ...reactIssues(each, path, set),
     ];
   });
 }
@@ -81,9 +81,9 @@ function quantityIssues(raw: unknown, field: Field, path: (string | number)[], u
   return range ? [{ pointer, code: range.code, message: range.message, value: shorten(raw), remedy: range.remedy }] : [];
 }
 
-function valueIssues(each: SpecCase, path: (string | number)[], units: Units): Issue[] {
+function valueIssues(each: SpecCase, path: (string | number)[], units: Units, set: ConstantsSet): Issue[] {
   return Object.entries(each).flatMap(([key, raw]) => {
-    const field = ROW_FIELDS.get(key);
+    const field = rowFields(set).get(key);
     return field && raw !== undefined ? quantityIssues(raw, field, [...path, key], Object.hasOwn(units, key) ? units[key] : null) : [];
   });
 }
@@ -100,7 +100,7 @@ function organicIssues({ organic }: SpecCase, path: (string | number)[]): Issue[
   return issues;
 }
 
-function reactIssues({ react }: SpecCase, path: (string | number)[]): Issue[] {
+function reactIssues({ react }: SpecCase, path: (string | number)[], set: ConstantsSet): Issue[] {
   if (!react) return [];
   const issues: Issue[] = [];
   if (react.gas !== undefined && react.gas !== "open" && react.gas !== "closed") {
@@ -109,7 +109,7 @@ function reactIssues({ react }: SpecCase, path: (string | number)[]): Issue[] {
   }
   for (const [name, solid] of Object.entries(react.solids ?? {})) {
     const at = [...path, "react", "solids", name];
-    const data = SOLIDS.find((each) => each.name === name);
+    const data = set.solids.find((each) => each.name === name);
     if (!data || !solid) continue;
     if (solid.supply !== undefined && solid.supply !== "excess" && solid.supply !== "may-form") issues.push(...quantityIssues(solid.supply, supplyField(data), [...at, "supply"], null));
     if (solid.saturation !== undefined) issues.push(...quantityIssues(solid.saturation, SATURATION, [...at, "saturation"], null));

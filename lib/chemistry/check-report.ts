@@ -1,6 +1,6 @@
 /** Names of columns and groups in a report. */
 import { COLUMN_GROUPS, MAIN_COLUMNS } from "@/lib/chemistry/column-plan";
-import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import { effectiveCases, type SpecCase } from "@/lib/chemistry/effective-cases";
 import { axisNames } from "@/lib/chemistry/fields";
 import { organicSpecies } from "@/lib/chemistry/organic-model";

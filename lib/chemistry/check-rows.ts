@@ -1,32 +1,32 @@
 /** The waters of a document: keys and quantities of each row, without a schema's price per cell. */
-import { ROW_FIELDS } from "@/lib/chemistry/fields";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
+import { rowFields } from "@/lib/chemistry/fields";
 import { isProblem, readQuantity, shorten } from "@/lib/chemistry/quantity";
 import { issueOfUnknownKey, issuesOf, pointerTo } from "@/lib/chemistry/spec-issues";
 import type { Issue } from "@/lib/errors";
-import { waterRowSchema } from "@/lib/schemas/job-spec";
+import { schemasOf } from "@/lib/schemas/job-spec";
 
-const ROW_KEYS = Object.keys(waterRowSchema.shape);
-const ROW_KEY_SET: ReadonlySet<string> = new Set(ROW_KEYS);
 const QUANTITY_KEYS = ["value", "unit", "as", "below", "sd", "method", "fraction", "log10"];
 
 /**
  * Faults of the rows that would refuse the document: unknown keys, unreadable quantities, unknown units. Values out of range are not
  * faults of the document; they make their row invalid. Stops once `limit` faults are found.
  */
-export function checkRows(rows: readonly unknown[], units: Readonly<Record<string, string>>, limit: number): Issue[] {
+export function checkRows(rows: readonly unknown[], units: Readonly<Record<string, string>>, limit: number, set: ConstantsSet = BUILT_IN): Issue[] {
   const issues: Issue[] = [];
-  const context = { units, issues, limit };
+  const keys = Object.keys(schemasOf(set).waterRowSchema.shape);
+  const context = { units, issues, limit, set, keys, keySet: new Set(keys) };
   for (let index = 0; index < rows.length && issues.length < limit; index++) checkRow(rows[index], index, context);
   return issues;
 }
 
-interface Context { units: Readonly<Record<string, string>>; issues: Issue[]; limit: number }
+interface Context { units: Readonly<Record<string, string>>; issues: Issue[]; limit: number; set: ConstantsSet; keys: readonly string[]; keySet: ReadonlySet<string> }
 
 /** Texts up to here are short enough for any column of text. */
 const SURE_LENGTH = 40;
 
 function checkRow(row: unknown, index: number, context: Context): void {
-  const { units, issues, limit } = context;
+  const { units, issues, limit, set, keys, keySet } = context;
   const path = ["waters", "rows", index];
   if (typeof row !== "object" || row === null || Array.isArray(row)) {
     issues.push({ pointer: pointerTo(path), code: "wrong-type", message: "A water is an object of columns and values.", value: shorten(row), remedy: "Write { \"id\": …, \"Ca\": … }." });
@@ -37,8 +37,8 @@ function checkRow(row: unknown, index: number, context: Context): void {
   for (const key of Object.keys(given)) {
     if (issues.length >= limit) return;
     const value = given[key];
-    const field = ROW_FIELDS.get(key);
-    if (!field && !ROW_KEY_SET.has(key)) { issues.push(issueOfUnknownKey(path, key, ROW_KEYS)); continue; }
+    const field = rowFields(set).get(key);
+    if (!field && !keySet.has(key)) { issues.push(issueOfUnknownKey(path, key, keys)); continue; }
     if (value === null) continue;
     if (!field) {
       needsSchema ||= !(typeof value === "string" ? value.length <= SURE_LENGTH : key === "id" && Number.isFinite(value));
@@ -52,9 +52,9 @@ function checkRow(row: unknown, index: number, context: Context): void {
     }
   }
   if (!needsSchema) return;
-  const parsed = waterRowSchema.safeParse(row);
+  const parsed = schemasOf(set).waterRowSchema.safeParse(row);
   if (parsed.success) return;
-  const found = issuesOf(parsed.error, row, (at) => (at.length === 0 ? ROW_KEYS : QUANTITY_KEYS)).map((issue) => ({ ...issue, pointer: pointerTo(path) + issue.pointer }));
+  const found = issuesOf(parsed.error, row, (at) => (at.length === 0 ? keys : QUANTITY_KEYS)).map((issue) => ({ ...issue, pointer: pointerTo(path) + issue.pointer }));
   const known = new Set(issues.map((issue) => issue.pointer));
   issues.push(...found.filter((issue) => !known.has(issue.pointer)));
 }

@@ -3,11 +3,14 @@ import { checkAxes } from "@/lib/chemistry/check-axes";
 import { checkCases } from "@/lib/chemistry/check-cases";
 import { checkReport } from "@/lib/chemistry/check-report";
 import { checkRows } from "@/lib/chemistry/check-rows";
-import { ROW_FIELDS } from "@/lib/chemistry/fields";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
+import { constantsSetOf, extendSet } from "@/lib/chemistry/extension";
+import { rowFields } from "@/lib/chemistry/fields";
 import { issuesOf, MOST_ISSUES } from "@/lib/chemistry/spec-issues";
 import { splitUnit, unitScale } from "@/lib/chemistry/units";
 import type { Issue } from "@/lib/errors";
-import { type JobSpec, jobSpecJsonSchema, jobSpecSchema, WATERS_PER_SPEC } from "@/lib/schemas/job-spec";
+import { extendSchema } from "@/lib/schemas/extend";
+import { type JobSpec, jobSpecJsonSchema, schemasOf, WATERS_PER_SPEC } from "@/lib/schemas/job-spec";
 import { nearestName } from "@/lib/schemas/nearest-name";
 
 export { MOST_ISSUES } from "@/lib/chemistry/spec-issues";
@@ -24,13 +27,15 @@ export interface CheckedSpec {
  */
 export function checkSpec(document: unknown): CheckedSpec {
   const { head, rows } = detachRows(document);
-  const parsed = jobSpecSchema.safeParse(head);
+  const { set, issues: own } = ownSet(head);
+  const parsed = schemasOf(set).jobSpecSchema.safeParse(head);
   const issues = parsed.success ? [] : issuesOf(parsed.error, head, (path) => keysAt(path.map(String)));
   const waters = watersOf(document);
   const units = unitsOf(waters);
+  issues.push(...own);
   if (waters) issues.push(...watersIssues(waters, rows));
-  issues.push(...checkTable((rows ?? []).slice(0, WATERS_PER_SPEC), units));
-  issues.push(...partIssues(head, units));
+  issues.push(...checkTable((rows ?? []).slice(0, WATERS_PER_SPEC), units, set));
+  issues.push(...partIssues(head, units, set));
   if (!parsed.success) return { spec: null, issues: limit(issues) };
   const spec = rows ? { ...parsed.data, waters: { ...parsed.data.waters, rows: rows as JobSpec["waters"]["rows"] } } : parsed.data;
   return { spec, issues: limit(issues) };
@@ -42,7 +47,9 @@ export function checkSpec(document: unknown): CheckedSpec {
  */
 export function readStoredSpec(document: unknown): JobSpec {
   const { head, rows } = detachRows(document);
-  const spec = jobSpecSchema.parse(head);
+  const { extend } = isObject(head) ? head : {};
+  const set = constantsSetOf(extend === undefined ? undefined : extendSchema.parse(extend));
+  const spec = schemasOf(set).jobSpecSchema.parse(head);
   return rows ? { ...spec, waters: { ...spec.waters, rows: rows as JobSpec["waters"]["rows"] } } : spec;
 }
 
@@ -50,24 +57,31 @@ export function readStoredSpec(document: unknown): JobSpec {
  * Faults of waters and their default units, at most MOST_ISSUES of them, with pointers below /waters. Any number of rows.
  * A wrong unit is one fault, not one for each of its rows: it is taken out of `units`, which the caller owns.
  */
-export function checkTable(rows: readonly unknown[], units: Record<string, string>): Issue[] {
-  const wrong = unitIssues(units);
+export function checkTable(rows: readonly unknown[], units: Record<string, string>, set: ConstantsSet = BUILT_IN): Issue[] {
+  const wrong = unitIssues(units, set);
   for (const { pointer } of wrong) delete units[pointer.slice("/waters/units/".length)];
-  return limit([...wrong, ...checkRows(rows, units, MOST_ISSUES)]);
+  return limit([...wrong, ...checkRows(rows, units, MOST_ISSUES, set)]);
 }
 
 /** Faults of cases, axes and report beyond their shape; each part is looked at though another one is no good. */
-function partIssues(head: unknown, units: Record<string, string>): Issue[] {
+function partIssues(head: unknown, units: Record<string, string>, set: ConstantsSet): Issue[] {
   if (!isObject(head)) return [];
-  const { cases: casesPart, vary: varyPart, report: reportPart } = jobSpecSchema.shape;
+  const { cases: casesPart, vary: varyPart, report: reportPart } = schemasOf(set).jobSpecSchema.shape;
   const cases = casesPart.safeParse(head.cases);
   const vary = varyPart.safeParse(head.vary);
   const report = reportPart.safeParse(head.report);
   return [
-    ...(cases.success ? checkCases(cases.data, units) : []),
-    ...(cases.success && vary.success ? checkAxes(vary.data ?? [], cases.data, units) : []),
-    ...(report.success ? checkReport(report.data ?? [], cases.success ? cases.data : null) : []),
+    ...(cases.success ? checkCases(cases.data, units, set) : []),
+    ...(cases.success && vary.success ? checkAxes(vary.data ?? [], cases.data, units, set) : []),
+    ...(report.success ? checkReport(report.data ?? [], cases.success ? cases.data : null, set) : []),
   ];
+}
+
+/** The constants set with what the document brings, and the faults of that. Its shape is the schema's to judge. */
+function ownSet(head: unknown): { set: ConstantsSet; issues: Issue[] } {
+  if (!isObject(head) || head.extend === undefined) return { set: BUILT_IN, issues: [] };
+  const parsed = extendSchema.safeParse(head.extend);
+  return parsed.success ? extendSet(parsed.data) : { set: BUILT_IN, issues: [] };
 }
 
 const limit = (issues: Issue[]): Issue[] => issues.slice(0, MOST_ISSUES);
@@ -112,13 +126,13 @@ function watersIssues(waters: Plain, rows: unknown[] | null): Issue[] {
 /** More columns than there are fields name most of them wrongly. */
 const MOST_UNITS = 2 * MOST_ISSUES;
 
-function unitIssues(units: Record<string, string>): Issue[] {
+function unitIssues(units: Record<string, string>, set: ConstantsSet): Issue[] {
   return limit(Object.entries(units).slice(0, MOST_UNITS).flatMap(([key, text]): Issue[] => {
     const pointer = `/waters/units/${key.replaceAll("~", "~0").replaceAll("/", "~1")}`;
-    const field = ROW_FIELDS.get(key);
+    const field = rowFields(set).get(key);
     if (!field) {
-      const nearest = nearestName(key, ROW_FIELDS.keys());
-      return [{ pointer, code: "unknown-column", message: `No column is called “${key.slice(0, 80)}”.`, value: key.slice(0, 80), remedy: nearest ? `Did you mean “${nearest}”?` : `Columns: ${[...ROW_FIELDS.keys()].join(", ")}.` }];
+      const nearest = nearestName(key, rowFields(set).keys());
+      return [{ pointer, code: "unknown-column", message: `No column is called “${key.slice(0, 80)}”.`, value: key.slice(0, 80), remedy: nearest ? `Did you mean “${nearest}”?` : `Columns: ${[...rowFields(set).keys()].join(", ")}.` }];
     }
     const { unit, as } = splitUnit(text);
     const scale = unitScale(field, unit, as);

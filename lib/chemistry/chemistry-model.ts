@@ -2,7 +2,7 @@
  * The chemistry of one case as a kernel tableau: which species take part, their stoichiometry over the components, their activity
  * classes, and how their constants follow from the printed reactions at any temperature.
  */
-import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import type { LogKOverT, Species } from "@/lib/chemistry/data/types";
 import { makeTableau } from "@/lib/chemistry/model-tableau";
 import { organicSpecies } from "@/lib/chemistry/organic-model";

@@ -1,6 +1,6 @@
 /** Which value columns a job has: names and groups of the report, expanded over the species of its cases, with descriptions. */
 import type { CaseSolver } from "@/lib/chemistry/case-solver";
-import { BUILT_IN } from "@/lib/chemistry/constants-set";
+import { BUILT_IN } from "@/lib/chemistry/data/constants-set";
 import { derivativeColumn, parseDerivative } from "@/lib/chemistry/sensitivity-names";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 

@@ -1,5 +1,5 @@
 /** Every place of a spec that takes a number with a unit: what kind of number it is and what a bare one is counted in. */
-import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import type { Analyte, Solid } from "@/lib/chemistry/data/types";
 
 export type FieldKind = "analyte" | "gas" | "pressure" | "temperature" | "length" | "conductivity" | "number" | "sites" | "solid";

@@ -1,7 +1,9 @@
 /** A case from words and units to numbers in base units. */
 import type { SpecCase } from "@/lib/chemistry/effective-cases";
-import { type Field, GAS, ROW_FIELDS, SITES, supplyField } from "@/lib/chemistry/fields";
-import { ANALYTES, ATOMIC_MASSES, SOLIDS } from "@/lib/chemistry/data";
+import { type Field, GAS, rowFields, SITES, supplyField } from "@/lib/chemistry/fields";
+import { ATOMIC_MASSES } from "@/lib/chemistry/data";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
+import type { Solid } from "@/lib/chemistry/data/types";
 import { isProblem, type Quantity, readQuantity } from "@/lib/chemistry/quantity";
 import { type BelowLimit, countedBase } from "@/lib/chemistry/resolve-water";
 import type { Pressure, ResolvedCase, ResolvedSolid } from "@/lib/chemistry/types";
@@ -35,25 +37,27 @@ export function organicOf({ organic }: SpecCase): ResolvedCase["organic"] {
 }
 
 /** @param kase with its `like` followed, of a checked spec. */
-export function resolveCase(kase: SpecCase, units: Units, belowLimit: BelowLimit): ResolvedCase {
+export function resolveCase(kase: SpecCase, units: Units, belowLimit: BelowLimit, set: ConstantsSet = BUILT_IN): ResolvedCase {
   const facts = kase.close!.map((fact) => (typeof fact === "string" ? fact : "saturated" as const));
   const saturation = kase.close!.find((fact) => typeof fact === "object");
   return {
     name: kase.name,
     close: { facts: [facts[0], facts[1]], saturated: saturation ? { solid: saturation.saturated, SI: saturation.SI ?? 0 } : null },
-    given: givenOf(kase, units, belowLimit),
+    given: givenOf(kase, { units, belowLimit, set }),
     activity: kase.activity ?? "davies",
     organic: organicOf(kase),
     complexes: kase.complexes ?? "all",
     constants: Object.fromEntries(Object.entries(kase.constants ?? {}).map(([name, value]) => [name, { logK: value!.logK }])),
-    react: reactOf(kase, facts),
+    react: reactOf(kase, facts, set),
   };
 }
 
-function givenOf(kase: SpecCase, units: Units, belowLimit: BelowLimit): ResolvedCase["given"] {
+interface Reading { units: Units; belowLimit: BelowLimit; set: ConstantsSet }
+
+function givenOf(kase: SpecCase, { units, belowLimit, set }: Reading): ResolvedCase["given"] {
   const given: ResolvedCase["given"] = {};
   const read = (key: string, raw: unknown): Quantity => {
-    const quantity = readChecked(raw, ROW_FIELDS.get(key)!, Object.hasOwn(units, key) ? units[key] : null);
+    const quantity = readChecked(raw, rowFields(set).get(key)!, Object.hasOwn(units, key) ? units[key] : null);
     return { ...quantity, base: countedBase(quantity, belowLimit) };
   };
   for (const key of ["temperature", "pH", "pHTemperature", "altitude", "alkalinity", "ANC", "DIC", "DOC"] as const) {
@@ -61,14 +65,14 @@ function givenOf(kase: SpecCase, units: Units, belowLimit: BelowLimit): Resolved
   }
   if (kase.pressure !== undefined) given.pressureAtm = read("pressure", kase.pressure).base;
   if (kase.pCO2 !== undefined) given.pCO2 = pressureOf(read("pCO2", kase.pCO2));
-  for (const { key, kind } of ANALYTES) {
+  for (const { key, kind } of set.analytes) {
     const raw = (kase as Record<string, unknown>)[key];
     if (kind === "total" && raw !== undefined) (given.totals ??= {})[key] = read(key, raw).base;
   }
   return given;
 }
 
-function reactOf(kase: SpecCase, facts: readonly string[]): ResolvedCase["react"] {
+function reactOf(kase: SpecCase, facts: readonly string[], set: ConstantsSet): ResolvedCase["react"] {
   if (!kase.react) return null;
   const { gas, solids } = kase.react;
   // The rule of the spec: open where close has pCO2, else closed.
@@ -77,13 +81,13 @@ function reactOf(kase: SpecCase, facts: readonly string[]): ResolvedCase["react"
   return {
     gas: gas === undefined ? usual : isWord ? gas : pressureOf(readChecked(gas, GAS, null)),
     solids: Object.entries(solids ?? {}).map(([name, given]): ResolvedSolid => ({
-      name, supply: supplyOf(name, given!.supply), saturation: given!.saturation ?? 0, logK: given!.logK ?? null,
+      name, supply: supplyOf(set.solids.find((each) => each.name === name)!, given!.supply), saturation: given!.saturation ?? 0, logK: given!.logK ?? null,
     })),
   };
 }
 
-function supplyOf(name: string, supply: unknown): ResolvedSolid["supply"] {
+function supplyOf(solid: Solid, supply: unknown): ResolvedSolid["supply"] {
   if (supply === undefined || supply === "may-form") return "may-form";
   if (supply === "excess") return "excess";
-  return readChecked(supply, supplyField(SOLIDS.find((each) => each.name === name)!), null).base;
+  return readChecked(supply, supplyField(solid), null).base;
 }

@@ -1,6 +1,7 @@
 /** A checked spec and its waters as numbers in base units, ready to be compiled. */
 import { pointCount, readAxis } from "@/lib/chemistry/axis-values";
 import { DEFAULT_REPORT } from "@/lib/chemistry/column-plan";
+import { constantsSetOf } from "@/lib/chemistry/extension";
 import { effectiveCases } from "@/lib/chemistry/effective-cases";
 import { resolveCase } from "@/lib/chemistry/resolve-case";
 import { resolveWater } from "@/lib/chemistry/resolve-water";
@@ -24,17 +25,18 @@ export function countRows(spec: Pick<JobSpec, "cases" | "vary">, waterCount: num
  */
 export function resolveJob(spec: JobSpec, rows: readonly Readonly<Record<string, unknown>>[]): ResolvedJob {
   const units = spec.waters.units ?? {};
+  const set = constantsSetOf(spec.extend);
   const belowLimit = spec.waters.belowLimit ?? "half";
   return {
-    waters: rows.map((row, index) => resolveWater(row, index, units, belowLimit)),
-    cases: effectiveCases(spec.cases).map((kase) => resolveCase(kase, units, belowLimit)),
+    waters: rows.map((row, index) => resolveWater(row, index, units, belowLimit, set)),
+    cases: effectiveCases(spec.cases).map((kase) => resolveCase(kase, units, belowLimit, set)),
     axes: (spec.vary ?? []).map((axis) => {
-      const read = readAxis(axis, units);
+      const read = readAxis(axis, units, set);
       if (Array.isArray(read)) throw new Error(`axis ${axis.field}: ${read[0].message}`);
       return read;
     }),
     missing: spec.waters.missing ?? "refuse",
-    units,
+    units, constantsSet: set,
     report: spec.report && spec.report.length > 0 ? [...spec.report] : [...DEFAULT_REPORT],
     solver: { tolerance: spec.solver?.tolerance ?? TOLERANCE, maxIterations: spec.solver?.maxIterations ?? MAX_ITERATIONS },
   };

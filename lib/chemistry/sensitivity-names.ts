@@ -1,5 +1,5 @@
 /** Columns of derivatives: "d:<column>/<input>" and bufferIntensity. What they are called, counted in and said to be. */
-import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/constants-set";
+import { BUILT_IN, type ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import { axisField, type Field } from "@/lib/chemistry/fields";
 import { splitUnit, unitScale, type UnitScale } from "@/lib/chemistry/units";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";

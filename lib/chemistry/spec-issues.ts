@@ -11,7 +11,7 @@ type ZodIssue = z.core.$ZodIssue;
 export const pointerTo = (path: Path): string => path.map((part) => "/" + String(part).replaceAll("~", "~0").replaceAll("/", "~1")).join("");
 
 /** Keys that the format has named for later versions; known, but not to be taken yet. */
-const LATER = new Set(["steps", "keep", "infer", "draws", "judge", "titration", "alkalinityBasis", "extend"]);
+const LATER = new Set(["steps", "keep", "infer", "draws", "judge", "titration", "alkalinityBasis"]);
 
 /** @param keysAt the keys that an object at a path may have. */
 export function issueOfUnknownKey(path: Path, key: string, keysAt: readonly string[]): Issue {

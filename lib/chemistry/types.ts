@@ -3,7 +3,7 @@
  *   job spec (words, units)  --resolveJob-->  ResolvedJob (numbers in base units)  --compileJob-->  CompiledJob (solves rows).
  * Base units: mol/kg water, eq/kg, atm, °C, m; DOC alone stays in mg C/L (chemistry.md section 8).
  */
-import type { ConstantsSet } from "@/lib/chemistry/constants-set";
+import type { ConstantsSet } from "@/lib/chemistry/data/constants-set";
 import type { ColumnDescriptor } from "@/lib/schemas/columns";
 
 export type ActivityModel = "ideal" | "guntelberg" | "davies" | "debye-huckel" | "truesdell-jones";

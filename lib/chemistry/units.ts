@@ -110,7 +110,7 @@ function findScale(field: Field, unit: string, as: string | null): UnitScale | n
       const amount = readAmount(unit);
       if (!amount) return null;
       if (amount.quantity === "mol") return plain(amount.scale);
-      return amount.quantity === "g" ? plain(amount.scale / molarMassOf(field.solid!.formula)!) : null;
+      return amount.quantity === "g" ? plain(amount.scale / (field.solid!.molarMass ?? molarMassOf(field.solid!.formula)!)) : null;
     }
   }
 }
@@ -171,6 +171,7 @@ const countIn = (analyte: Analyte, as: string): number => compositionOf(as)?.[el
 const isOneOf = (analyte: Analyte, as: string): boolean => countIn(analyte, as) === 1;
 
 function massScale(analyte: Analyte, scale: number, as: string): UnitScale | null {
+  if (as === analyte.formula) return plain(scale / analyte.molarMass);
   const count = countIn(analyte, as);
   const mass = molarMassOf(as);
   return mass !== null && count > 0 ? plain(scale * count / mass) : null;

@@ -81,10 +81,10 @@ export function systemFor(kernel: Kernel): System | DependentPhases {
   if (!family) { family = new Map(); kernel.systems.set(key, family); }
   const isReaction = closure >= CLOSURE.react;
   let solidKey: number | string = 0;
-  // 64 solids with 4 components each: eight digits of a number are exact below 2^53; more solids than that take a text.
+  // 128 solids with 4 components each: five digits of a number are exact below 2^53; more held solids than that take a text.
   for (let k = 0; k < heldCount; k++) {
     const digit: number = held[k] * 4 + (isReaction ? scarcest(kernel, closure, held[k]).choice : 0) + 1;
-    solidKey = heldCount <= 8 ? Number(solidKey) * 64 + digit : `${solidKey}/${digit}`;
+    solidKey = heldCount <= 5 ? Number(solidKey) * 1024 + digit : `${solidKey}/${digit}`;
   }
   const known = family.get(solidKey);
   if (known) return known;

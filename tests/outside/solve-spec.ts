@@ -2,13 +2,13 @@
 import { compileJob } from "@/lib/chemistry/compile-job";
 import { resolveJob } from "@/lib/chemistry/resolve-job";
 import { STATUS_NAMES } from "@/lib/chemistry/types";
-import { jobSpecSchema } from "@/lib/schemas/job-spec";
+import { readStoredSpec } from "@/lib/chemistry/check-spec";
 
 export interface SolvedRow { water: string; case: string; point: number; status: string; message: string; warnings: string; residual: number; values: Record<string, number> }
 
 export function solveSpec(document: Record<string, unknown>): SolvedRow[] {
   const waters = document.waters as { rows: Record<string, unknown>[] };
-  const job = compileJob(resolveJob(jobSpecSchema.parse(document), waters.rows));
+  const job = compileJob(resolveJob(readStoredSpec(document), waters.rows));
   const rows = job.solve(0, job.rowCount);
   return Array.from({ length: rows.count }, (_, at) => {
     const point = at % job.pointsPerCase;

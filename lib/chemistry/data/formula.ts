@@ -1,6 +1,8 @@
 /** Formulas and reactions in plain text: what the data files are written in. */
 import { ATOMIC_MASSES } from "./atomic-masses";
 
+type Masses = Readonly<Record<string, number>>;
+
 const STATE = /\((?:aq|g)\)$/;
 const CHARGE = /\^(\d*)([+-])$/;
 
@@ -14,24 +16,24 @@ export function chargeOf(name: string): number {
  * Atoms of a formula: groups ("Al(OH)3"), hydrates ("CaSO4·2H2O"), charge and state ("CO2(aq)") are understood.
  * @returns null where the text is no formula of known elements.
  */
-export function compositionOf(formula: string): Record<string, number> | null {
+export function compositionOf(formula: string, masses: Masses = ATOMIC_MASSES): Record<string, number> | null {
   const atoms: Record<string, number> = {};
   for (const part of formula.replace(CHARGE, "").replace(STATE, "").split(/[·*]/)) {
     const [, times, body] = /^(\d*)(.*)$/.exec(part)!;
-    if (!addAtoms(atoms, body, Number(times || 1))) return null;
+    if (!addAtoms(atoms, body, Number(times || 1), masses)) return null;
   }
   return Object.keys(atoms).length > 0 ? atoms : null;
 }
 
-function addAtoms(atoms: Record<string, number>, body: string, times: number): boolean {
+function addAtoms(atoms: Record<string, number>, body: string, times: number, masses: Masses): boolean {
   let rest = body;
   while (rest) {
     const group = /^\(([^()]+)\)(\d*)/.exec(rest);
     const atom = group ? null : /^([A-Z][a-z]?)(\d*)/.exec(rest);
     if (group) {
-      if (!addAtoms(atoms, group[1], times * Number(group[2] || 1))) return false;
+      if (!addAtoms(atoms, group[1], times * Number(group[2] || 1), masses)) return false;
       rest = rest.slice(group[0].length);
-    } else if (atom && Object.hasOwn(ATOMIC_MASSES, atom[1])) {
+    } else if (atom && Object.hasOwn(masses, atom[1])) {
       atoms[atom[1]] = (atoms[atom[1]] ?? 0) + times * Number(atom[2] || 1);
       rest = rest.slice(atom[0].length);
     } else return false;
@@ -40,9 +42,9 @@ function addAtoms(atoms: Record<string, number>, body: string, times: number): b
 }
 
 /** g/mol, or null where the text is no formula of known elements. */
-export function molarMassOf(formula: string): number | null {
-  const atoms = compositionOf(formula);
-  return atoms ? Object.entries(atoms).reduce((sum, [element, count]) => sum + count * ATOMIC_MASSES[element], 0) : null;
+export function molarMassOf(formula: string, masses: Masses = ATOMIC_MASSES): number | null {
+  const atoms = compositionOf(formula, masses);
+  return atoms ? Object.entries(atoms).reduce((sum, [element, count]) => sum + count * masses[element], 0) : null;
 }
 
 /** "H^+ + 2 F^- = HF2^-" as signed counts, products positive. The name of a solid may be left out of its own dissolution. */

@@ -43,6 +43,8 @@ export interface Species {
 export interface Solid {
   name: string;
   formula: string;
+  /** g/mol, where the formula holds a spec's own elements. */
+  molarMass?: number;
   composition: Record<string, number>;
   /** Dissolution as printed: the solid has −1 and is left out; other terms as in Species.reaction. */
   reaction: Record<string, number>;

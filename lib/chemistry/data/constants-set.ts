@@ -1,6 +1,8 @@
 /** The constants that a job computes with: the built-in set, or that set with a spec's own species, solids and analytes. */
-import { ANALYTES, SOLIDS, SPECIES } from "@/lib/chemistry/data";
-import type { Analyte, Solid, Species } from "@/lib/chemistry/data/types";
+import { ANALYTES } from "./analytes";
+import { SOLIDS } from "./solids";
+import { SPECIES } from "./species";
+import type { Analyte, Solid, Species } from "./types";
 
 export interface ConstantsSet {
   species: readonly Species[];
