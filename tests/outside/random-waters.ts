@@ -13,6 +13,8 @@ export interface Draw {
   spec: Record<string, unknown>;
   /** The independent answer, or the reason why there is none. */
   answer(): PlainOutcome | string;
+  /** What the two facts alone ask, where nothing else happens to the water; else null. */
+  problem: PlainProblem | null;
 }
 
 /** Small counter-based generator (splitmix32 over seed and counter). */
@@ -197,7 +199,7 @@ export function draw(seed: number): Draw | null {
       name: "c", close, activity: model, organic: organicDocument, complexes: complexes.document, ...kase,
       ...(Object.keys(constants).length > 0 ? { constants } : {}), ...(meeting ? { react: meeting.document } : {}),
     }],
-    report: ["pH", "pCO2", "DIC", "ionicStrength", "ANC", "alkalinity", "chargeError", "species", "SI", "solids", "gas:CO2"],
+    report: ["pH", "pCO2", "DIC", "ionicStrength", "ANC", "alkalinity", "chargeError", "species", "activities", "SI", "solids", "gas:CO2"],
   };
   const answer = (): PlainOutcome | string => {
     try {
@@ -211,7 +213,7 @@ export function draw(seed: number): Draw | null {
   };
   const solids = meeting?.supplies.map((each) => `${each.solid} ${typeof each.supply === "number" ? "finite" : each.supply}`).join(" + ");
   const label = `${kind}, ${close.map((each) => (typeof each === "string" ? each : "saturated")).join(" + ")}, ${model}, ${celsius} °C${meeting ? `, ${meeting.document.gas}${solids ? `, ${solids}` : ""}` : ""}`;
-  return { seed, label, spec, answer };
+  return { seed, label, spec, answer, problem: meeting || measuredAt !== celsius ? null : problem };
 }
 
 export { solidLogK };

@@ -8,7 +8,7 @@ import { fileURLToPath } from "node:url";
 import { AGREEMENT, compareSeed } from "./independent-compare";
 import { PAIRS } from "./random-waters";
 
-interface Report { seed: number; pair: string; model: string; meets: string; worst: number; worstName: string; isUnsolvable: boolean; wrong: string | null }
+interface Report { seed: number; pair: string; model: string; meets: string; worst: number; worstName: string; isUnsolvable: boolean; isConfirmed: boolean; wrong: string | null }
 
 const argument = (name: string, fallback: number): number => {
   const at = process.argv.indexOf(`--${name}`);
@@ -24,9 +24,9 @@ function reportOf(seed: number): Report | null {
     const { label, worst, worstName, misses } = found;
     const [, pair, model, , ...met] = label.split(", ");
     const isUnsolvable = typeof found.answer === "string";
-    return { seed, pair, model, meets: met.join(", ") || "nothing", worst, worstName, isUnsolvable, wrong: misses.length > 0 ? `${label}: ${misses.slice(0, 3).join("; ")}` : null };
+    return { seed, pair, model, meets: met.join(", ") || "nothing", worst, worstName, isUnsolvable, isConfirmed: found.isConfirmed, wrong: misses.length > 0 ? `${label}: ${misses.slice(0, 3).join("; ")}` : null };
   } catch (error) {
-    return { seed, pair: "?", model: "?", meets: "?", worst: NaN, worstName: "", isUnsolvable: false, wrong: `the second solver failed: ${error instanceof Error ? error.message : String(error)}` };
+    return { seed, pair: "?", model: "?", meets: "?", worst: NaN, worstName: "", isUnsolvable: false, isConfirmed: false, wrong: `the second solver failed: ${error instanceof Error ? error.message : String(error)}` };
   }
 }
 
@@ -71,6 +71,7 @@ function summarise(reports: readonly Report[], started: number): number {
   const ranked = [...solved].sort((a, b) => b.worst - a.worst);
   const quantile = (p: number) => ranked[Math.floor((1 - p) * (ranked.length - 1))].worst.toExponential(1);
   console.log(`\n${solved.length} waters compared, ${reports.length - solved.length} that have no state by either way, seeds ${reports[0].seed}–${reports[reports.length - 1].seed}, ${Math.round((Date.now() - started) / 1000)} s`);
+  console.log(`${solved.filter((each) => each.isConfirmed).length} of them found by the kernel alone, and confirmed by the second way's balances in 34 digits`);
   console.log(`pairs (${PAIRS.length} in all): ${count(solved, (each) => each.pair)}`);
   console.log(`activity models: ${count(solved, (each) => each.model)}`);
   console.log(`react: ${count(solved, (each) => (each.meets === "nothing" ? "none" : each.meets.includes(" + ") ? "several solids" : /excess|may-form|finite/.test(each.meets) ? "one solid" : "gas only"))}; ${new Set(solved.map((each) => each.meets)).size} different sets of gas and solids`);
