@@ -158,10 +158,22 @@ export const constantEntry = z.object({
   logK: z.number().nullable().meta({ description: "At the temperature asked for; null for a component" }),
   logK25: z.number().nullable(), source: z.string().nullable(), reference: z.string().nullable(),
   fromMemory: z.boolean(), note: z.string().nullable(),
+  logKs: z.array(z.number()).nullable().meta({ description: "At each of `temperatures`; null for a component" }),
+  form: z.union([
+    z.object({ kind: z.literal("analytic"), a: z.number(), bT: z.number(), "c/T": z.number(), "d·log10T": z.number(), "e/T2": z.number() }),
+    z.object({ kind: z.literal("vantHoff"), logK25: z.number(), reactionEnthalpy: z.number().meta({ description: "kJ/mol" }) }),
+  ]).nullable().meta({ description: "log K over temperature: log K = a + bT·T + (c/T)/T + (d·log10T)·log10 T + (e/T2)/T², T in kelvin; or van 't Hoff from 25 °C" }),
+  ionSize: z.number().nullable().meta({ description: "Å (Kielland 1937; 4 for pairs he does not list)" }),
+  truesdellJones: z.object({ a: z.number(), b: z.number() }).nullable().meta({ description: "å in Å and b in kg/mol (Truesdell & Jones 1974, from memory)" }),
+  conductance: z.number().nullable().meta({ description: "Limiting equivalent conductance at 25 °C, S·cm²/eq (from memory)" }),
 });
 export type ConstantEntry = z.infer<typeof constantEntry>;
 export const constantsTable = z.object({
-  constantsVersion: z.string(), temperature: z.number(), entries: z.array(constantEntry),
+  constantsVersion: z.string(), temperature: z.number(),
+  temperatures: z.array(z.number()).meta({ description: "°C, those of `logKs`" }),
+  reference: z.object({ temperature: z.number(), pressure: z.string(), state: z.string() }).meta({ description: "Reference conditions of every log K" }),
+  entries: z.array(constantEntry),
+  methods: z.array(z.object({ name: z.string(), formula: z.string(), source: z.string(), range: z.string(), fromMemory: z.boolean() })).meta({ description: "How the figures become results" }),
 });
 export type ConstantsTable = z.infer<typeof constantsTable>;
 
@@ -226,5 +238,9 @@ export const sampleRowsQuery = z.strictObject({
 export const tokenListQuery = pageQuery.extend({
   owner: z.enum(["me", "all"]).default("me").meta({ description: "all: everyone's, administrators only" }),
 });
-export const constantsQuery = z.strictObject({ temperature: z.coerce.number().min(0).max(90).default(25) });
+export const constantsQuery = z.strictObject({
+  temperature: z.coerce.number().min(0).max(90).default(25),
+  temperatures: z.string().max(400).regex(/^\d+(\.\d+)?(,\d+(\.\d+)?){0,49}$/, "Write up to 50 temperatures in °C, such as 0,10,25,40").refine((text) => text.split(",").every((each) => Number(each) <= 90), "Temperatures go from 0 to 90 °C").default("0,10,25,40")
+    .meta({ description: "°C, up to 50, for log K over temperature", examples: ["0,10,25,40"] }),
+});
 export const auditQuery = pageQuery.extend({ action: z.string().max(60).optional() });
