@@ -6,6 +6,8 @@ import { Field } from "@/components/ui/field";
 import { FormulaText, ReactionText } from "@/components/ui/formula-text";
 import { LoadState } from "@/components/ui/load-state";
 import { Page, Section } from "@/components/ui/page";
+import { CheckTable } from "./check-table";
+import { MethodTable } from "./method-table";
 import { getConstants } from "@/lib/client/api";
 import { fixed } from "@/lib/commands/numbers";
 import type { ConstantEntry } from "@/lib/schemas/api";
@@ -40,6 +42,8 @@ export function ConstantsView() {
         <>
           <Section title="Solids"><DataTable label="Solids" columns={columns} items={entries.filter((entry) => entry.kind === "solid")} keyOf={(entry) => entry.name} empty="No solid fits." /></Section>
           <Section title="Aqueous species and gas"><DataTable label="Species" columns={columns} items={entries.filter((entry) => entry.kind === "species")} keyOf={(entry) => entry.name} empty="No species fits." /></Section>
+          <Section title="Methods"><MethodTable methods={table.data.methods} /></Section>
+          <Section title="Checks against published values"><CheckTable /></Section>
         </>
       )}
     </Page>
