@@ -55,17 +55,17 @@ export function makeSensitivity(solver: CaseSolver, units: Readonly<Record<strin
     moved.set(input.name, result);
     return result;
   };
+  const bufferLinearisation = makeLinearisation(model.tableau, mostTies);
+  const bufferTangent = makeTangent(model.tableau, mostTies);
+  const base = makeSeed(solver, mostTies);
+  base.totals[HYDROGEN] = -1;
   const bufferIntensity = (): number => {
     refresh();
     const last = stages[stages.length - 1];
     const stage = last.kind === "reacted" ? last : closedStage(solver, last);
-    const lin = makeLinearisation(model.tableau, mostTies);
-    linearise(lin, stage.state);
-    const seed = makeSeed(solver, mostTies);
-    seed.totals[HYDROGEN] = -1;
-    const tangent = makeTangent(model.tableau, mostTies);
-    solveTangent(lin, seed, tangent);
-    const slope = -tangent.x[HYDROGEN] / Math.LN10;
+    linearise(bufferLinearisation, stage.state);
+    solveTangent(bufferLinearisation, base, bufferTangent);
+    const slope = -bufferTangent.x[HYDROGEN] / Math.LN10;
     return Math.abs(slope) > HELD ? MILLI / slope : NaN;
   };
   return {
