@@ -13,9 +13,12 @@
  * A component of zero total has no ln a. Its species are linear in its total there: c_i = (g_i/Σ ν_ij g_i)·T_j with g_i = c_i/a_j, which
  * gives the one-sided derivative (`traceComponent`). Species with two of it, or with another absent component, vanish faster.
  * Inactive bounded solids stay inactive: at the very point where one appears the derivative is one-sided too.
+ * Held phases whose compositions depend on each other (calcite + celestite = gypsum + strontianite) coexist at one point of their constants
+ * only. One of them is left out; an input that moves it off the others has no derivative, and how much of each there is, is a choice.
  */
 import { LEAST_WATER_ACTIVITY, WATER_LOWERING } from "./evaluate";
 import { factorise, type Factors, makeFactors, solveFactored } from "./factor";
+import { eliminate } from "./linear";
 import type { Constants, Phase, Tableau } from "./tableau";
 
 const LN10 = Math.LN10;
@@ -65,6 +68,9 @@ export interface Linearisation {
   column: Int32Array;
   strengthColumn: number;
   amountColumn: Int32Array;
+  /** Ties that follow from others: tie = Σ coefficient·other. */
+  dependents: { tie: number; of: number[]; coefficients: Float64Array }[];
+  isDependent: Uint8Array;
   scale: Float64Array;
   lnGamma: Float64Array;
   byStrength: Float64Array; byA: Float64Array; byB: Float64Array;
@@ -81,7 +87,7 @@ export function makeLinearisation(tableau: Tableau, mostTies: number): Linearisa
   const f = (length: number) => new Float64Array(length);
   return {
     tableau, state: { c: f(0), x: f(0), present: new Uint8Array(0), totals: f(0), usesAlkalinity: false, isFree: new Uint8Array(0), constants: { lnK: f(0), solidLnK: f(0), gasLnK: 0, debyeA: 0, debyeB: 0 }, ties: [] },
-    factors: makeFactors(size), isRegular: false, column: new Int32Array(n), strengthColumn: -1, amountColumn: new Int32Array(mostTies),
+    factors: makeFactors(size), isRegular: false, column: new Int32Array(n), strengthColumn: -1, amountColumn: new Int32Array(mostTies), dependents: [], isDependent: new Uint8Array(mostTies),
     scale: f(size), lnGamma: f(k), byStrength: f(k), byA: f(k), byB: f(k), lnWater: 0, waterSlope: 0,
     right: f(size), solution: f(size), moved: f(tableau.speciesCount),
   };
@@ -96,15 +102,30 @@ export function linearise(lin: Linearisation, state: StatePoint): void {
   const { tableau, factors } = lin;
   lin.state = state;
   bindActivity(lin);
+  findDependents(lin);
   let order = 0;
   for (let j = 0; j < tableau.componentCount; j++) lin.column[j] = state.present[j] ? order++ : -1;
   lin.strengthColumn = tableau.gamma.isIdeal ? -1 : order;
   if (!tableau.gamma.isIdeal) order += 2;
-  state.ties.forEach((tie, k) => { lin.amountColumn[k] = tie.isSource ? order++ : -1; });
+  state.ties.forEach((tie, k) => { lin.amountColumn[k] = tie.isSource && !lin.isDependent[k] ? order++ : -1; });
   factors.order = order;
   factors.matrix.fill(0, 0, order * order);
   fillRows(lin);
   lin.isRegular = factorise(factors) < 0;
+}
+
+function findDependents(lin: Linearisation): void {
+  const { state, tableau, isDependent } = lin;
+  const columns = Array.from({ length: tableau.componentCount }, (_, j) => j);
+  const kept: number[] = [];
+  lin.dependents.length = 0;
+  state.ties.forEach((tie, k) => {
+    isDependent[k] = 0;
+    const found = kept.length === 0 ? null : eliminate([...kept, k].map((m) => state.ties[m].phase.nu), tableau.componentCount, columns);
+    if (!found || !("dependentRow" in found)) { kept.push(k); return; }
+    isDependent[k] = 1;
+    lin.dependents.push({ tie: k, of: [...kept], coefficients: found.coefficients });
+  });
 }
 
 function bindActivity(lin: Linearisation): void {
@@ -171,7 +192,8 @@ function fillRows(lin: Linearisation): void {
     state.ties.forEach(({ phase }, k) => { if (amountColumn[k] >= 0) matrix[row * order + amountColumn[k]] += phase.nu[j] / size; });
     row++;
   }
-  for (const { phase } of state.ties) {
+  for (const [k, { phase }] of state.ties.entries()) {
+    if (lin.isDependent[k]) continue;
     scale[row] = 1;
     for (let j = 0; j < n; j++) if (phase.nu[j] !== 0 && column[j] >= 0) matrix[row * order + column[j]] += phase.nu[j];
     if (strengthColumn >= 0) matrix[row * order + strengthColumn + 1] += phase.water * lin.waterSlope;
@@ -191,7 +213,7 @@ function fillRows(lin: Linearisation): void {
 /** Solves for one seed. @returns false where the state is singular; `out` is then NaN. */
 export function solveTangent(lin: Linearisation, seed: Seed, out: Tangent): boolean {
   const { tableau, state, factors, column, strengthColumn, amountColumn, right, solution, moved, scale } = lin;
-  if (!lin.isRegular) { out.x.fill(NaN); out.c.fill(NaN); out.amounts.fill(NaN); out.lnWater = NaN; out.strength = NaN; return false; }
+  if (!lin.isRegular || !keepsDependents(lin, seed)) { out.x.fill(NaN); out.c.fill(NaN); out.amounts.fill(NaN); out.lnWater = NaN; out.strength = NaN; return false; }
   const n = tableau.componentCount;
   // Change of each concentration with the unknowns held: by constants, and by traces of components that were not there.
   for (let i = 0; i < tableau.speciesCount; i++) {
@@ -208,7 +230,7 @@ export function solveTangent(lin: Linearisation, seed: Seed, out: Tangent): bool
     right[row] = v / scale[row];
     row++;
   }
-  for (let k = 0; k < state.ties.length; k++) right[row++] = seed.targets[k];
+  for (let k = 0; k < state.ties.length; k++) if (!lin.isDependent[k]) right[row++] = seed.targets[k];
   if (strengthColumn >= 0) {
     let I = 0;
     let M = 0;
@@ -221,8 +243,22 @@ export function solveTangent(lin: Linearisation, seed: Seed, out: Tangent): bool
   out.strength = strengthColumn >= 0 ? solution[strengthColumn] : 0;
   out.lnWater = strengthColumn >= 0 ? lin.waterSlope * solution[strengthColumn + 1] : 0;
   for (let k = 0; k < state.ties.length; k++) out.amounts[k] = amountColumn[k] >= 0 ? solution[amountColumn[k]] : 0;
+  for (const { tie, of, coefficients } of lin.dependents) {
+    out.amounts[tie] = NaN;
+    of.forEach((other, m) => { if (coefficients[m] !== 0) out.amounts[other] = NaN; });
+  }
   readConcentrations(lin, out);
   return true;
+}
+
+/** Whether phases that depend on each other stay at one point together. */
+function keepsDependents({ dependents }: Linearisation, seed: Seed): boolean {
+  return dependents.every(({ tie, of, coefficients }) => {
+    let off = seed.targets[tie];
+    let size = Math.abs(off);
+    of.forEach((other, m) => { off -= coefficients[m] * seed.targets[other]; size += Math.abs(coefficients[m] * seed.targets[other]); });
+    return Math.abs(off) <= 1e-9 * size;
+  });
 }
 
 /** Adds to `moved` what a trace of an absent component puts into its species. */

@@ -1,9 +1,13 @@
 import { describe, expect, it } from "vitest";
 import { checkSpec } from "@/lib/chemistry/check-spec";
+import { makeCaseSolver } from "@/lib/chemistry/case-solver";
 import { compileJob } from "@/lib/chemistry/compile-job";
 import { resolveJob } from "@/lib/chemistry/resolve-job";
+import { makeSeed } from "@/lib/chemistry/sensitivity-seeds";
+import { recordStages } from "@/lib/chemistry/sensitivity-stages";
 import { debyeSizeFactor, debyeSlope, debyeTemperatureSlopes, fractionSlopes, logKAt, logKSlope, pressureOfFraction } from "@/lib/chemistry/temperature";
 import { SOLIDS, SPECIES } from "@/lib/chemistry/data";
+import { linearise, makeLinearisation, makeTangent, solveTangent } from "@/lib/kernel/derivative";
 import { BECK, closing, makeAxis, makeCase, makeJob, makeWater, meeting, solveAll, solveOne } from "./kernel-fixtures";
 
 const central = (f: (x: number) => number, x: number, h: number) => (f(x - 2 * h) - 8 * f(x - h) + 8 * f(x + h) - f(x + 2 * h)) / (12 * h);
@@ -77,6 +81,35 @@ describe("a derivative", () => {
     near(values["d:pH/temperature"], difference("temperature", 12, 0.05, closing("pH", "alkalinity"), water), 1e-5);
     near(values["d:pH/pHTemperature"], difference("pHTemperature", 12, 0.05, closing("pH", "alkalinity"), water), 1e-5);
     expect(values["d:pH/temperature"] * values["d:pH/pHTemperature"]).toBeLessThan(0);
+  });
+});
+
+describe("phases that depend on each other", () => {
+  it("leave every derivative as it is but that of their amounts, and none by what parts them", () => {
+    const kase = makeCase(meeting("closed", { calcite: "excess" }));
+    const solver = makeCaseSolver(makeJob([], [kase]), kase);
+    const stages = recordStages(solver);
+    solver.solve(makeWater(BECK), 0);
+    const { state, celsius, kind } = stages()[1];
+    expect([celsius, kind]).toEqual([12, "reacted"]);
+    const seed = makeSeed(solver, 4);
+    const tangentOf = (ties: typeof state.ties) => {
+      const lin = makeLinearisation(solver.model.tableau, 4);
+      const tangent = makeTangent(solver.model.tableau, 4);
+      linearise(lin, { ...state, ties });
+      return { isSolved: solveTangent(lin, seed, tangent), ...tangent };
+    };
+    seed.totals[0] = 1;
+    const once = tangentOf(state.ties);
+    const twice = tangentOf([...state.ties, ...state.ties]);
+    expect(twice.isSolved).toBe(true);
+    expect(twice.x).toEqual(once.x);
+    expect(once.amounts[0]).not.toBeNaN();
+    expect([twice.amounts[0], twice.amounts[1]]).toEqual([NaN, NaN]);
+    seed.targets[1] = 1;
+    expect(tangentOf([...state.ties, ...state.ties]).isSolved).toBe(false);
+    seed.targets[0] = 1;
+    expect(tangentOf([...state.ties, ...state.ties]).isSolved).toBe(true);
   });
 });
 
