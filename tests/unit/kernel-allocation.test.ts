@@ -25,10 +25,13 @@ it("the kernel's loop allocates nothing per row beyond a few boxed numbers", () 
     }
   };
   run(20000); // until compiled
-  collect();
-  const before = process.memoryUsage().heapUsed;
-  run(2000);
-  const perRow = (process.memoryUsage().heapUsed - before) / 2000;
+  // The least of three: what else the process does meanwhile can only add.
+  const perRow = Math.min(...Array.from({ length: 3 }, () => {
+    collect();
+    const before = process.memoryUsage().heapUsed;
+    run(2000);
+    return (process.memoryUsage().heapUsed - before) / 2000;
+  }));
   // One array per row of the smallest useful size would be above 200 bytes; a workspace per row some 10,000.
   expect(perRow).toBeLessThan(150);
 });
