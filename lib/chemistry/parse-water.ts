@@ -226,6 +226,8 @@ export function specForLine(line: ParsedLine): JobSpec {
     cases: [{
       name: caseName(facts, isAmbient, isWarm), close: [...facts] as JobSpec["cases"][number]["close"], activity: "davies",
       ...(isAmbient ? { pCO2: AMBIENT_CO2 } : {}), ...(isWarm ? { temperature: ASSUMED_CELSIUS } : {}),
+      // Whoever names the organic carbon means its acids to count; which model is shown with the answer.
+      ...(line.row.DOC !== undefined ? { organic: { model: "hruska-2003" as const } } : {}),
     }],
   };
 }
