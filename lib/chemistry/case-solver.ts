@@ -7,13 +7,14 @@ import { caseSolids, type InputReader, makeInputReader, type RowInput } from "@/
 import { caseTraits, type CaseTraits, hydrogenTotal, inputFault, pressureOf, usedFacts, type UsedFacts } from "@/lib/chemistry/row-problem";
 import { makeReaction, type Reaction, runReaction } from "@/lib/chemistry/row-reaction";
 import { noStateReason } from "@/lib/chemistry/no-state";
-import { conditioningWarning, rowWarnings } from "@/lib/chemistry/row-warnings";
+import { conditioningWarning, DEPENDENT_SOLIDS, rowWarnings, severalStates } from "@/lib/chemistry/row-warnings";
 import { type ResolvedCase, type ResolvedJob, type ResolvedWater, STATUS } from "@/lib/chemistry/types";
 import { certify, type Claim, makeClaim, TIE } from "@/lib/kernel/certificate";
 import { componentSum } from "@/lib/kernel/evaluate";
 import { CARBON, CLOSURE, HYDROGEN, type Kernel, makeKernel } from "@/lib/kernel/kernel";
 import { type Facts, makeSettleResult, settle, type SettleResult } from "@/lib/kernel/settle";
 import type { Constants } from "@/lib/kernel/tableau";
+import type { Witness } from "@/lib/kernel/witness";
 
 /** The state of the row solved last, for the columns; valid where `status` is ok. */
 export interface CaseSolver {
@@ -28,6 +29,8 @@ export interface CaseSolver {
   status: number;
   message: string;
   warnings: string[];
+  /** Where the row is invalid: why, in a form that can be checked apart. */
+  witness: Witness | null;
   residual: number;
   /** Newton iterations of the row. */
   iterations: number;
@@ -60,7 +63,7 @@ export function makeCaseSolver(job: ResolvedJob, kase: ResolvedCase): CaseSolver
   const solver: CaseSolver = {
     model, kernel, kase, traits, facts: usedFacts(kase), input: reader.input, present: new Uint8Array(model.components.length),
     reaction: makeReaction(model, caseSolids(model, kase)),
-    status: STATUS.ok, message: "", warnings: [], residual: NaN, iterations: 0, serial: 0, onState: null,
+    status: STATUS.ok, message: "", warnings: [], witness: null, residual: NaN, iterations: 0, serial: 0, onState: null,
     solve: (water, point) => solveRow(parts, water, point),
   };
   const parts: Parts = {
@@ -74,8 +77,9 @@ export function makeCaseSolver(job: ResolvedJob, kase: ResolvedCase): CaseSolver
   return solver;
 }
 
-function fail(solver: CaseSolver, status: number, message: string): void {
+function fail(solver: CaseSolver, status: number, message: string, witness: Witness | null = null): void {
   solver.status = status;
+  solver.witness = witness;
   solver.message = message;
 }
 
@@ -85,17 +89,19 @@ function solveRow(parts: Parts, water: ResolvedWater, point: number): void {
   solver.status = STATUS.ok;
   solver.message = "";
   solver.warnings.length = 0;
+  solver.witness = null;
   solver.residual = 0;
   solver.kernel.ws.iterations = 0;
   const input = parts.reader.read(water, point);
   const fault = water.faults.length > 0 ? water.faults.map((f) => f.message).join("; ")
     : inputFault(input, solver.traits, solver.facts, job.missing);
-  if (fault) fail(solver, STATUS.invalid, fault);
+  if (fault) fail(solver, STATUS.invalid, fault, { kind: "input" });
   if (solver.status === STATUS.ok) settleWater(parts);
   if (solver.status === STATUS.ok && solver.kase.react) {
     const problem = runReaction(solver, constantsAt(parts, input.temperature), job.solver);
     solver.residual = Math.max(solver.residual, problem.residual);
-    if (problem.status !== STATUS.ok) fail(solver, problem.status, problem.message);
+    if (problem.status !== STATUS.ok) fail(solver, problem.status, problem.message, problem.witness);
+    if (problem.isDependent) solver.warnings.push(DEPENDENT_SOLIDS);
   }
   solver.iterations = solver.kernel.ws.iterations;
   if (solver.status === STATUS.ok && !(solver.residual <= job.solver.tolerance)) {
@@ -124,10 +130,10 @@ function settleWater(parts: Parts): void {
   const settlesAt = facts.pH && !Number.isNaN(input.pHTemperature) ? input.pHTemperature : input.temperature;
   ws.constants = constantsAt(parts, settlesAt);
   const fault = setFacts(parts, settlesAt);
-  if (fault) { fail(solver, STATUS.invalid, fault); return; }
+  if (fault) { fail(solver, STATUS.invalid, fault.message, fault.witness); return; }
   settle(kernel, parts.settling, settled);
-  if (!report(parts)) return;
-  if (settled.states > 1) solver.warnings.push(`${settled.states} states satisfy ${solver.kase.close.facts.join(" and ")}; the one of lowest pH is given`);
+  if (!report(parts, "facts")) return;
+  if (settled.states > 1) solver.warnings.push(severalStates(solver.kase.close.facts));
   const loose = conditioningWarning(solver);
   if (loose) solver.warnings.push(loose);
   certifySettled(parts);
@@ -140,22 +146,26 @@ function settleWater(parts: Parts): void {
   const f = parts.settling;
   f.closure = CLOSURE.balanceTotal; f.usesAlkalinity = false; f.xH = NaN; f.xC = NaN; f.solid = -1;
   settle(kernel, f, settled);
-  if (report(parts)) certifySettled(parts);
+  if (report(parts, "own-temperature")) certifySettled(parts);
 }
 
 /** @returns false where no state was found, with status and message set. */
-function report(parts: Parts): boolean {
+function report(parts: Parts, stage: "facts" | "own-temperature"): boolean {
   const { solver, settled } = parts;
   if (settled.outcome === "solved") return true;
   const facts = solver.kase.close.facts.join(" and ");
-  if (settled.outcome === "no-state") fail(solver, STATUS.invalid, noStateReason(solver, settled));
-  else if (settled.outcome === "no-finite-solution") fail(solver, STATUS.invalid, "no finite solution: no ionic strength up to 30 mol/kg agrees with these totals and this activity model");
+  if (settled.outcome === "no-state") {
+    const { unknown, from, to, least, most } = settled;
+    fail(solver, STATUS.invalid, noStateReason(solver, settled), { kind: "scan", unknown, from, to, least, most });
+  } else if (settled.outcome === "no-finite-solution") {
+    fail(solver, STATUS.invalid, "no finite solution: no ionic strength up to 30 mol/kg agrees with these totals and this activity model", { kind: "strength", upTo: 30, stage });
+  }
   else fail(solver, STATUS.notConverged, `not converged while settling ${facts}`);
   return false;
 }
 
-/** Totals, presence and held values from the input; @returns why not, or "". */
-function setFacts(parts: Parts, celsius: number): string {
+/** Totals, presence and held values from the input; @returns why not, or null. */
+function setFacts(parts: Parts, celsius: number): { message: string; witness: Witness } | null {
   const { solver, settling } = parts;
   const { input, kernel, present, facts, model, traits } = solver;
   const { totals, constants } = kernel.ws;
@@ -176,13 +186,15 @@ function setFacts(parts: Parts, celsius: number): string {
   settling.xC = NaN;
   if (facts.pCO2) {
     const pressure = pressureOf(input.pCO2, input.isFraction, celsius, input);
-    if (!(pressure > 0)) return `pCO2 ${pressure} atm is not above 0`;
+    if (!(pressure > 0)) return { message: `pCO2 ${pressure} atm is not above 0`, witness: { kind: "input" } };
     settling.xC = constants.gasLnK + Math.log(pressure);
     if (facts.DIC) {
       const gas = Math.exp(settling.xC);
-      if (!(input.DIC > 0)) return "DIC is 0, which no pCO2 above 0 agrees with";
+      if (!(input.DIC > 0)) return { message: "DIC is 0, which no pCO2 above 0 agrees with", witness: { kind: "gas", dissolves: gas, total: input.DIC } };
       // With salting-out the dissolved gas is a little less; the scan decides the cases in between.
-      if (kernel.tableau.gamma.isIdeal && input.DIC <= gas) return `no state: pCO2 alone dissolves ${gas.toPrecision(4)} mol/kg of CO2, not less than the DIC of ${input.DIC.toPrecision(4)}`;
+      if (kernel.tableau.gamma.isIdeal && input.DIC <= gas) {
+        return { message: `no state: pCO2 alone dissolves ${gas.toPrecision(4)} mol/kg of CO2, not less than the DIC of ${input.DIC.toPrecision(4)}`, witness: { kind: "gas", dissolves: gas, total: input.DIC } };
+      }
     }
   }
   settling.solid = -1;
@@ -190,9 +202,11 @@ function setFacts(parts: Parts, celsius: number): string {
     settling.solid = traits.saturatedSolid;
     settling.solidTarget = constants.solidLnK[traits.saturatedSolid] + input.closeSI * Math.LN10;
     const lacking = model.components.filter((_, j) => model.phases[traits.saturatedSolid].nu[j] !== 0 && !present[j]);
-    if (lacking.length > 0) return `no state: ${model.solids[traits.saturatedSolid]} needs ${lacking.join(", ")}, of which the water has none`;
+    if (lacking.length > 0) {
+      return { message: `no state: ${model.solids[traits.saturatedSolid]} needs ${lacking.join(", ")}, of which the water has none`, witness: { kind: "absent", components: lacking } };
+    }
   }
-  return "";
+  return null;
 }
 
 function certifySettled(parts: Parts): void {

@@ -8,12 +8,14 @@ import { type Assemblage, makeAssemblage, solveAssemblage } from "@/lib/kernel/a
 import { certify, type Claim, makeClaim, TIE } from "@/lib/kernel/certificate";
 import { componentSum } from "@/lib/kernel/evaluate";
 import { CARBON, HYDROGEN } from "@/lib/kernel/kernel";
+import { SAME_TARGET } from "@/lib/kernel/solid-ties";
 import type { Constants } from "@/lib/kernel/tableau";
+import type { Witness } from "@/lib/kernel/witness";
 
 export interface Reaction {
   /** Model indices of the case's solids, ascending. */
   solids: number[];
-  /** Pairs of positions in `solids` of equal composition. */
+  /** Pairs of positions in `solids` of equal composition, water included. */
   alike: [number, number][];
   assemblage: Assemblage;
   /** Position in `solids` of each solid of the assemblage. */
@@ -22,7 +24,7 @@ export interface Reaction {
   /** Dissolved by solid of the case (formed: negative) and CO2 taken up, mol/kg. */
   dissolved: Float64Array;
   gasTaken: number;
-  outcome: { status: number; message: string; residual: number };
+  outcome: { status: number; message: string; residual: number; witness: Witness | null; isDependent: boolean };
 }
 
 export function makeReaction(model: ChemistryModel, caseSolids: readonly { index: number }[]): Reaction {
@@ -30,13 +32,15 @@ export function makeReaction(model: ChemistryModel, caseSolids: readonly { index
   const alike: [number, number][] = [];
   for (let a = 0; a < solids.length; a++) {
     for (let b = a + 1; b < solids.length; b++) {
-      if (model.phases[solids[a]].nu.every((v, j) => v === model.phases[solids[b]].nu[j])) alike.push([a, b]);
+      const one = model.phases[solids[a]];
+      const other = model.phases[solids[b]];
+      if (one.water === other.water && one.nu.every((v, j) => v === other.nu[j])) alike.push([a, b]);
     }
   }
   return {
     solids, alike, assemblage: makeAssemblage(solids.length), places: new Int32Array(solids.length),
     claim: makeClaim(model.tableau, solids.length + 2), dissolved: new Float64Array(solids.length), gasTaken: 0,
-    outcome: { status: STATUS.ok, message: "", residual: 0 },
+    outcome: { status: STATUS.ok, message: "", residual: 0, witness: null, isDependent: false },
   };
 }
 
@@ -47,23 +51,27 @@ export function runReaction(solver: CaseSolver, constants: Constants, settings: 
   outcome.status = STATUS.ok;
   outcome.message = "";
   outcome.residual = 0;
+  outcome.witness = null;
+  outcome.isDependent = false;
   reaction.gasTaken = 0;
   reaction.dissolved.fill(0);
   kernel.ws.constants = constants;
   const xC = gasTarget(solver, constants);
-  if (typeof xC === "string") return refuse(outcome, xC);
+  if (typeof xC === "string") return refuse(outcome, xC, { kind: "input" });
   setTotals(solver);
   if (!Number.isNaN(xC)) present[CARBON] = 1;
   addSupplies(solver);
   fillAssemblage(solver, constants);
-  const fault = alikeFault(solver);
-  if (fault) return refuse(outcome, fault);
   assemblage.present = present;
   assemblage.xC = xC;
   assemblage.maxIterations = settings.maxIterations;
+  const fault = alikeFault(solver);
+  if (fault) return refuse(outcome, fault, solidsWitness(solver));
   const result = solveAssemblage(kernel, assemblage);
-  if (result === "dependent") return refuse(outcome, `the set ${heldNames(solver, !Number.isNaN(xC))} is not supported yet: the compositions of these depend on each other`);
-  if (result === "no-finite-solution") return refuse(outcome, "no finite solution: no ionic strength up to 30 mol/kg agrees with this reaction and this activity model");
+  if (result === "contradiction") return refuse(outcome, contradiction(solver), solidsWitness(solver));
+  if (result === "no-finite-solution") {
+    return refuse(outcome, "no finite solution: no ionic strength up to 30 mol/kg agrees with this reaction and this activity model", { kind: "strength", upTo: 30, stage: "reaction" });
+  }
   if (result === "failed") {
     outcome.status = STATUS.notConverged;
     outcome.message = `not converged while reacting with ${heldNames(solver, !Number.isNaN(xC)) || "the gas"}`;
@@ -73,14 +81,16 @@ export function runReaction(solver: CaseSolver, constants: Constants, settings: 
     const place = reaction.places[k];
     const supply = input.supplyKind[place] === SUPPLY.finite ? input.supplies[place] : 0;
     reaction.dissolved[place] = supply - assemblage.amounts[k];
+    if (assemblage.isTied[k]) outcome.isDependent = true;
   }
   reaction.gasTaken = 0 - assemblage.gasAmount; // not −0
   outcome.residual = certifyReaction(solver, constants, xC);
   return outcome;
 }
 
-function refuse(outcome: Reaction["outcome"], message: string): Reaction["outcome"] {
+function refuse(outcome: Reaction["outcome"], message: string, witness: Witness): Reaction["outcome"] {
   outcome.status = STATUS.invalid;
+  outcome.witness = witness;
   outcome.message = message;
   return outcome;
 }
@@ -136,13 +146,12 @@ function fillAssemblage(solver: CaseSolver, constants: Constants): void {
     a.solids[k] = solid;
     a.isExcess[k] = input.supplyKind[place] === SUPPLY.excess ? 1 : 0;
     a.mayHold[k] = 1;
+    a.supplies[k] = input.supplyKind[place] === SUPPLY.finite ? input.supplies[place] : 0;
     a.targets[k] = constants.solidLnK[solid] + input.saturations[place] * Math.LN10;
   });
 }
 
-/** Targets of alike solids closer than this (ln units) are equal: which of them exists is then undecided. */
-const SAME_TARGET = 1e-9;
-
+/** Two forms of one composition: only the one of lowest target can be at equilibrium, and none above it can be in excess. */
 function alikeFault(solver: CaseSolver): string {
   const { reaction, model } = solver;
   const a = reaction.assemblage;
@@ -150,14 +159,52 @@ function alikeFault(solver: CaseSolver): string {
   for (const [first, second] of reaction.alike) {
     const p = at(first);
     const q = at(second);
-    if (p < 0 || q < 0) continue;
-    const names = `${model.solids[a.solids[p]]} and ${model.solids[a.solids[q]]}`;
-    if (Math.abs(a.targets[p] - a.targets[q]) < SAME_TARGET) return `the set ${names} at one and the same saturation is not supported yet: how much of each forms is undecided`;
+    if (p < 0 || q < 0 || Math.abs(a.targets[p] - a.targets[q]) <= SAME_TARGET) continue;
     const upper = a.targets[p] > a.targets[q] ? p : q;
-    if (a.isExcess[upper]) return `solids contradict: ${names} have the same composition, and with ${model.solids[a.solids[upper]]} in excess the other would form without end`;
     a.mayHold[upper] = 0;
+    if (!a.isExcess[upper]) continue;
+    a.combination.fill(0);
+    a.combination[p] = upper === p ? -1 : 1;
+    a.combination[q] = -a.combination[p];
+    a.gasCombination = 0;
+    return `solids contradict: ${model.solids[a.solids[p]]} and ${model.solids[a.solids[q]]} have the same composition, and with ${model.solids[a.solids[upper]]} in excess the other would form without end`;
   }
   return "";
+}
+
+/** The reaction among the solids that no activities satisfy, with the solids named that demand it. */
+function contradiction(solver: CaseSolver): string {
+  const { reaction, model } = solver;
+  const a = reaction.assemblage;
+  const left: string[] = [];
+  const right: string[] = [];
+  const excess: string[] = [];
+  const add = (name: string, factor: number) => {
+    if (Math.abs(factor) < 1e-9) return;
+    (factor < 0 ? left : right).push(`${Math.abs(Math.abs(factor) - 1) < 1e-9 ? "" : `${Number(Math.abs(factor).toPrecision(6))} `}${name}`);
+  };
+  for (let k = 0; k < a.count; k++) {
+    add(model.solids[a.solids[k]], a.combination[k]);
+    if (a.isExcess[k] && Math.abs(a.combination[k]) > 1e-9 && k !== a.culprit) excess.push(model.solids[a.solids[k]]);
+  }
+  add("CO2(g)", a.gasCombination);
+  const culprit = model.solids[a.solids[a.culprit]];
+  const why = a.isExcess[a.culprit] ? `${culprit} cannot be at its saturation too` : `${culprit} would form without end`;
+  return `solids contradict: ${left.join(" + ")} = ${right.join(" + ")}, so with ${excess.join(" and ")} in excess ${why}`;
+}
+
+function solidsWitness(solver: CaseSolver): Witness {
+  const { kernel, reaction, model } = solver;
+  const a = reaction.assemblage;
+  const used = Array.from({ length: a.count }, (_, k) => k).filter((k) => a.combination[k] !== 0);
+  const hasGas = !Number.isNaN(a.xC) && a.gasCombination !== 0;
+  return {
+    kind: "solids", lnWater: kernel.ws.lnWater,
+    phases: [...used.map((k) => model.phases[a.solids[k]]), ...(hasGas ? [kernel.holdsCarbon] : [])],
+    coefficients: [...used.map((k) => a.combination[k]), ...(hasGas ? [a.gasCombination] : [])],
+    targets: [...used.map((k) => a.targets[k]), ...(hasGas ? [a.xC] : [])],
+    isHeld: [...used.map((k) => a.isExcess[k] === 1), ...(hasGas ? [true] : [])],
+  };
 }
 
 function heldNames(solver: CaseSolver, hasGas: boolean): string {

@@ -1,4 +1,7 @@
-/** What a reader must know beside an answer that is exact but may not mean what it seems to. */
+/**
+ * What a reader must know beside an answer that is exact but may not mean what it seems to. Each warning starts with a code that stays
+ * the same; no figures of the row stand in it, so that a million rows share a handful of texts and a summary can count them.
+ */
 import type { CaseSolver } from "@/lib/chemistry/case-solver";
 import type { ActivityModel, ResolvedWater } from "@/lib/chemistry/types";
 import { CARBON, CLOSURE, HYDROGEN } from "@/lib/kernel/kernel";
@@ -7,6 +10,10 @@ import { CARBON, CLOSURE, HYDROGEN } from "@/lib/kernel/kernel";
 const MODEL_RANGE: Record<ActivityModel, number> = {
   ideal: Infinity, guntelberg: 0.1, davies: 0.5, "debye-huckel": 0.1, "truesdell-jones": 1,
 };
+/** °C from which a constant known at 25 °C with its reaction enthalpy only is an extrapolation worth a word. */
+const ENTHALPY_REACH = 50;
+/** Sum of solutes, mol/kg, from which 1 L of water holds about 1 % less or more than 1 kg of H2O (0.5 mol/kg NaCl: 1.01 L). */
+const DILUTE = 1;
 /** mg C/L above which dissolved aluminium is largely bound to organic matter. */
 const BROWN_WATER = 5;
 /** Below this pH, and below this share of carbon in the balance, alkalinity or ions say little about the carbon. */
@@ -18,13 +25,32 @@ export function rowWarnings(solver: CaseSolver, water: ResolvedWater): void {
   const { warnings, input, kase, kernel, traits, model } = solver;
   for (const warning of water.warnings) warnings.push(warning);
   const range = MODEL_RANGE[kase.activity];
-  // No figures of the row in a warning: a million rows then share a handful of texts, and a summary can count them.
-  if (kernel.ws.ionicStrength > range) warnings.push(`ionic strength is beyond the range of the ${kase.activity} model (${range} mol/kg)`);
+  if (kernel.ws.ionicStrength > range) warnings.push(`activity-range: ionic strength is beyond the range of the ${kase.activity} model (${range} mol/kg)`);
+  if (kernel.ws.sumM > DILUTE) warnings.push(`non-dilute: above ${DILUTE} mol/kg of solutes 1 L of water no longer holds 1 kg of H2O; amounts given per litre are off by 1 % or more`);
+  if (input.temperature > ENTHALPY_REACH && isExtrapolated(solver)) {
+    warnings.push(`temperature-range: above ${ENTHALPY_REACH} °C some constants are extrapolated from 25 °C with a fixed reaction enthalpy`);
+  }
   const hasAluminium = traits.aluminium >= 0 && input.totals[traits.aluminium] > 0;
   if (hasAluminium && input.DOC > BROWN_WATER && !water.aluminiumFractionGiven) {
-    warnings.push("Al is taken as inorganic monomeric; in brown water (DOC above 5 mg/L) a total overstates its charge: give the fraction");
+    warnings.push("aluminium-fraction: Al is taken as inorganic monomeric; in brown water (DOC above 5 mg/L) a total overstates its charge: give the fraction");
   }
-  if (model.organicComponent >= 0 && Number.isNaN(input.DOC)) warnings.push("no DOC given: organic acids are left out");
+  if (model.organicComponent >= 0 && Number.isNaN(input.DOC)) warnings.push("no-DOC: no DOC given: organic acids are left out");
+}
+
+export const DEPENDENT_SOLIDS = "dependent-solids: solids at equilibrium depend on each other in composition; the amounts given are the smallest that keep the balances";
+
+export function severalStates(facts: readonly string[]): string {
+  return `several-states: more than one state satisfies ${facts.join(" and ")}; the one of lowest pH is given`;
+}
+
+/** Whether a species present, or the solid of the case, has a constant known by its enthalpy only. */
+function isExtrapolated(solver: CaseSolver): boolean {
+  const { model, kernel } = solver;
+  for (let i = 0; i < model.data.length; i++) {
+    const logK = model.data[i]?.logK;
+    if (logK?.form === "vantHoff" && kernel.ws.c[i] > 0 && Number.isNaN(solver.input.overrides[model.reactionIndex.get(model.species[i]) ?? -1] ?? NaN)) return true;
+  }
+  return false;
 }
 
 /** A warning where the two facts leave the answer loosely tied, from the settled state; "" where they do not. */

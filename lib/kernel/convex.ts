@@ -12,6 +12,7 @@
  * Strength. φ(I) = I(c at I) − I is positive at I = 0, and up to I = 0.4, where every activity model keeps the problem strictly convex, it
  * changes sign at most once. So φ(0.4) < 0 brackets the answer below 0.4; otherwise I rises by a factor 1.2 until φ changes sign. The bracket
  * is closed by secants and bisection (of ln I while it is wide). The first sign change is the root of lowest I, which is the answer.
+ * Where ln(I(c)/I) passes a least value above zero between three points, golden sections look for two roots close together there.
  * None up to 30 mol/kg: no finite solution.
  */
 import { assembleJacobian, evaluateActivity, evaluateSystem } from "./evaluate";
@@ -25,6 +26,7 @@ const ROUNDING = 1e-11;
 const CORE_STEPS = 400;
 const WATER_STEPS = 90;
 const HIGHEST_STRENGTH = 30;
+const STRENGTH_FACTOR = 1.2;
 /** Ionic strength up to which there is one root at most, mol/kg: 0.66 for Davies with |z| ≤ 3 at 25 °C, lower in hot water. */
 export const CONVEX_STRENGTH = 0.4;
 /** Sum of solutes at which 1 − 0.017·Σc reaches 0.02. */
@@ -33,51 +35,83 @@ const LEAST_STRENGTH = 1e-12;
 
 export type SureResult = "solved" | "no-finite-solution" | "failed";
 
+/** Solves for the concentrations at the activity coefficients in the workspace; false where it could not. */
+export type Inner = () => boolean;
+
 /** Solves a convex system from `ws.y`. On "solved" the state is in `ws.y`, `ws.cs`, `ws.ionicStrength`, `ws.soluteSum`. */
 export function solveSurely(system: System, tableau: Tableau, ws: Workspace): SureResult {
-  if (tableau.gamma.isIdeal) return core(system, tableau, ws) ? "solved" : "failed";
+  return searchStrength(tableau, ws, () => core(system, tableau, ws));
+}
+
+/** The search over ionic strength, around any way to solve at fixed activity coefficients. */
+export function searchStrength(tableau: Tableau, ws: Workspace, inner: Inner): SureResult {
+  if (tableau.gamma.isIdeal) return inner() ? "solved" : "failed";
   let low = LEAST_STRENGTH;
   let high = CONVEX_STRENGTH;
-  let phiHigh = strengthError(system, tableau, ws, high);
+  let phiHigh = strengthError(tableau, ws, inner, high);
   let phiLow = phiHigh;
-  if (phiHigh <= 0) phiLow = strengthError(system, tableau, ws, low);
+  if (phiHigh <= 0) phiLow = strengthError(tableau, ws, inner, low);
   while (phiHigh > 0) {
+    const last = Math.log1p(phiLow / low);
     low = high;
     phiLow = phiHigh;
-    high *= 1.2;
+    high *= STRENGTH_FACTOR;
     if (high > HIGHEST_STRENGTH) return "no-finite-solution";
-    phiHigh = strengthError(system, tableau, ws, high);
+    phiHigh = strengthError(tableau, ws, inner, high);
+    const middle = Math.log1p(phiLow / low);
+    if (phiHigh > 0 && middle < last && middle < Math.log1p(phiHigh / high)) {
+      const dip = findDip(tableau, ws, inner, low / STRENGTH_FACTOR, high);
+      if (dip) { low /= STRENGTH_FACTOR; high = dip[0]; phiHigh = dip[1]; phiLow = strengthError(tableau, ws, inner, low); }
+    }
   }
   if (!Number.isFinite(phiLow) || !Number.isFinite(phiHigh)) return "failed";
-  return closeBracket(system, tableau, ws, { low, phiLow, high, phiHigh });
+  return closeBracket(tableau, ws, inner, { low, phiLow, high, phiHigh });
+}
+
+/** Golden sections for a point with φ ≤ 0 between two with φ > 0; null where the dip stays short. */
+function findDip(tableau: Tableau, ws: Workspace, inner: Inner, from: number, to: number): [number, number] | null {
+  const golden = 0.6180339887498949;
+  let a = from;
+  let b = to;
+  let u = b + (a - b) * golden;
+  let v = a + (b - a) * golden;
+  let phiU = strengthError(tableau, ws, inner, u);
+  let phiV = strengthError(tableau, ws, inner, v);
+  for (let k = 0; k < 24; k++) {
+    if (phiU <= 0) return [u, phiU];
+    if (phiV <= 0) return [v, phiV];
+    if (phiU / u < phiV / v) { b = v; v = u; phiV = phiU; u = b + (a - b) * golden; phiU = strengthError(tableau, ws, inner, u); }
+    else { a = u; u = v; phiU = phiV; v = a + (b - a) * golden; phiV = strengthError(tableau, ws, inner, v); }
+  }
+  return null;
 }
 
 interface Bracket { low: number; phiLow: number; high: number; phiHigh: number }
 
-function closeBracket(system: System, tableau: Tableau, ws: Workspace, b: Bracket): SureResult {
+function closeBracket(tableau: Tableau, ws: Workspace, inner: Inner, b: Bracket): SureResult {
   for (let k = 0; k < 200; k++) {
     if (Math.abs(b.phiLow) <= STOP * b.low || b.high - b.low <= 2e-16 * b.high) break;
     // Every third step halves the bracket, so that the secant cannot stall on one side.
     const secant = b.low + (b.high - b.low) * (b.phiLow / (b.phiLow - b.phiHigh));
     const half = b.high > 4 * b.low ? Math.sqrt(b.low * b.high) : 0.5 * (b.low + b.high);
     const middle = k % 3 === 2 || !(secant > b.low && secant < b.high) ? half : secant;
-    const phi = strengthError(system, tableau, ws, middle);
+    const phi = strengthError(tableau, ws, inner, middle);
     if (!Number.isFinite(phi)) return "failed";
     if (Math.abs(phi) <= STOP * middle) return "solved";
     if (phi > 0) { b.low = middle; b.phiLow = phi; } else { b.high = middle; b.phiHigh = phi; }
   }
-  return Number.isFinite(strengthError(system, tableau, ws, b.low)) ? "solved" : "failed";
+  return Number.isFinite(strengthError(tableau, ws, inner, b.low)) ? "solved" : "failed";
 }
 
 /** φ(I), with the core solved at γ(I); NaN where the core did not converge, huge where the solutes outgrow the water activity's law. */
-function strengthError(system: System, tableau: Tableau, ws: Workspace, ionicStrength: number): number {
+function strengthError(tableau: Tableau, ws: Workspace, inner: Inner, ionicStrength: number): number {
   ws.ionicStrength = ionicStrength;
   let low = 0;
   let high = MOST_SOLUTES;
   ws.soluteSum = Math.min(ws.soluteSum, high);
   for (let k = 0; k < WATER_STEPS; k++) {
     evaluateActivity(tableau, ws);
-    if (!core(system, tableau, ws)) return NaN;
+    if (!inner()) return NaN;
     if (Math.abs(ws.sumM - ws.soluteSum) <= 1e-14 * (1 + ws.sumM)) return ws.sumI - ionicStrength;
     if (ws.sumM > ws.soluteSum) low = ws.soluteSum; else high = ws.soluteSum;
     if (low >= MOST_SOLUTES) return Number.MAX_VALUE;
@@ -89,7 +123,7 @@ function strengthError(system: System, tableau: Tableau, ws: Workspace, ionicStr
 }
 
 /** Newton at the activity coefficients in `ws`; @returns whether it converged. */
-function core(system: System, tableau: Tableau, ws: Workspace): boolean {
+export function core(system: System, tableau: Tableau, ws: Workspace): boolean {
   if (tableau.gamma.isIdeal) evaluateActivity(tableau, ws);
   let previous = Infinity;
   for (let step = 0; step <= CORE_STEPS; step++) {

@@ -44,10 +44,14 @@ export interface SettleResult {
   /** Least and largest error met by a scan, over the whole bracket: the witness of "no-state", both of one sign. */
   least: number;
   most: number;
+  /** The bracket scanned (natural logarithms of activities). */
+  unknown: "hydrogen" | "carbon";
+  from: number;
+  to: number;
 }
 
 export function makeSettleResult(): SettleResult {
-  return { outcome: "failed", states: 0, least: NaN, most: NaN };
+  return { outcome: "failed", states: 0, least: NaN, most: NaN, unknown: "carbon", from: NaN, to: NaN };
 }
 
 /** Brackets of the unknowns, natural logarithms: a(CO2) 1e-20 … 10, pH −2 … 16. */
@@ -182,6 +186,9 @@ function scan(kernel: Kernel, facts: Facts, result: SettleResult): void {
   let states = 0;
   let bracket: [number, number, number, number] | null = null;
   let isComplete = true;
+  result.unknown = isHydrogenUnknown(facts) ? "hydrogen" : "carbon";
+  result.from = low;
+  result.to = high;
   result.least = Infinity;
   result.most = -Infinity;
   let before = NaN;

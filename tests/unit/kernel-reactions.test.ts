@@ -87,11 +87,45 @@ describe("sets that cannot be", () => {
     const row = solveOne(BECK, meeting("open", { aragonite: "excess", calcite: "excess" }), REPORT);
     expect([row.status, row.message]).toEqual(["invalid", expect.stringContaining("solids contradict: calcite and aragonite")]);
   });
-  it("dependent compositions in excess are refused by name, never answered", () => {
+  it("dependent compositions in excess whose targets do not agree are refused with the combination that proves it", () => {
     const row = solveOne(BECK, meeting("closed", { calcite: "excess", celestite: "excess", gypsum: "excess", strontianite: "excess" }), REPORT);
     expect(row.status).toBe("invalid");
-    expect(row.message).toContain("not supported yet");
+    expect(row.message).toMatch(/^solids contradict: /);
     for (const name of ["calcite", "celestite", "gypsum", "strontianite"]) expect(row.message).toContain(name);
+  });
+  it("dependent compositions in excess whose targets agree share the amounts", () => {
+    const constants = { calcite: { logK: -8.5 }, celestite: { logK: -6.6 }, anhydrite: { logK: -4.35 }, strontianite: { logK: -10.75 } };
+    const set = { calcite: "excess", celestite: "excess", anhydrite: "excess", strontianite: "excess" } as const;
+    const row = solveOne(BECK, { ...meeting("closed", set), constants }, REPORT);
+    expect([row.status, row.warnings]).toEqual(["ok", expect.stringContaining("dependent-solids:")]);
+    for (const name of Object.keys(set)) expect(row.values[`SI:${name}`]).toBeCloseTo(0, 9);
+    // the least-norm share has no part along calcite + celestite - anhydrite - strontianite
+    const of = (name: string) => row.values[`solid:${name}`];
+    expect(of("calcite") + of("celestite") - of("anhydrite") - of("strontianite")).toBeCloseTo(0, 9);
+    // the state is the one that any three of them give
+    const three = solveOne(BECK, { ...meeting("closed", { calcite: "excess", celestite: "excess", strontianite: "excess" }), constants }, REPORT);
+    expect(isClose(row.values.pH, three.values.pH, 1e-9)).toBe(true);
+  });
+  it("forms of one composition at one target share the amount, as far as there is something to share", () => {
+    const constants = { aragonite: { logK: -8.5 }, calcite: { logK: -8.5 } };
+    const one = solveOne(BECK, { ...meeting("open", { calcite: "excess" }), constants }, REPORT);
+    const both = solveOne(BECK, { ...meeting("open", { calcite: "excess", aragonite: "excess" }), constants }, REPORT);
+    expect(both.warnings).toContain("dependent-solids:");
+    expect(isClose(both.values["solid:calcite"], one.values["solid:calcite"] / 2, 1e-8)).toBe(true);
+    expect(isClose(both.values["solid:aragonite"], both.values["solid:calcite"], 1e-8)).toBe(true);
+    const little = Math.abs(one.values["solid:calcite"]) / 1e4;
+    const supplied = solveOne({ pCO2: { atm: 4e-4 } }, { ...meeting("open", { calcite: "excess", aragonite: little }), constants }, REPORT);
+    expect(supplied.values["solid:aragonite"]).toBeCloseTo(little * 1e3, 12);
+  });
+  it("gypsum and anhydrite in excess contradict: no activity of water suits both", () => {
+    const row = solveOne(BECK, meeting("closed", { gypsum: "excess", anhydrite: "excess" }), REPORT);
+    expect([row.status, row.message]).toEqual(["invalid", expect.stringMatching(/^solids contradict: .*(gypsum|anhydrite)/)]);
+  });
+  it("gypsum that may form beside anhydrite takes its place where the water allows", () => {
+    const row = solveOne({ temperature: 25, pCO2: { atm: 4e-4 } }, meeting("closed", { anhydrite: 0.1, gypsum: "may-form" }), REPORT);
+    expect(row.message).toBe("");
+    expect(row.values["SI:gypsum"]).toBeCloseTo(0, 9);
+    expect(row.values["solid:anhydrite"]).toBeCloseTo(100, 6);
   });
   it("dependent compositions that may form are answered: one of them gives way", () => {
     const water = { temperature: 25, totals: { Ca: 0.05, Sr: 0.03, SO4: 0.06, Na: 0.05, Cl: 0.02 }, pCO2: { atm: 4e-4 } };

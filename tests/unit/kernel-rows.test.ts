@@ -70,14 +70,27 @@ describe("rows that cannot be solved", () => {
 describe("warnings", () => {
   const brown = { ...BECK, DOC: 12, aluminiumFractionGiven: false };
   it("aluminium of unsaid fraction in brown water", () => {
-    expect(solveOne(brown, {}, ["pH"]).warnings).toContain("Al is taken as inorganic monomeric");
+    expect(solveOne(brown, {}, ["pH"]).warnings).toContain("aluminium-fraction: Al is taken as inorganic monomeric");
     expect(solveOne({ ...brown, aluminiumFractionGiven: true }, {}, ["pH"]).warnings).toBe("");
     expect(solveOne({ ...brown, DOC: 5 }, {}, ["pH"]).warnings).toBe("");
   });
   it("ionic strength beyond the model's range", () => {
     const brine = { totals: { Na: 0.3, Cl: 0.3 }, pCO2: { atm: 4e-4 } };
     expect(solveOne(brine, { activity: "davies" }, ["pH"]).warnings).toBe("");
-    expect(solveOne(brine, { activity: "debye-huckel" }, ["pH"]).warnings).toContain("beyond the range of the debye-huckel model");
+    expect(solveOne(brine, { activity: "debye-huckel" }, ["pH"]).warnings).toContain("activity-range: ionic strength is beyond the range of the debye-huckel model");
+  });
+});
+
+describe("warnings of range", () => {
+  it("concentrated water, where a litre is no kilogram", () => {
+    const brine = (Na: number) => solveOne({ totals: { Na, Cl: Na }, pCO2: { atm: 4e-4 } }, {}, ["pH"]).warnings;
+    expect(brine(0.6)).toContain("non-dilute: ");
+    expect(brine(0.1)).toBe("");
+  });
+  it("hot water, where constants rest on an enthalpy", () => {
+    expect(solveOne({ ...BECK, temperature: 60 }, {}, ["pH"]).warnings).toContain("temperature-range: ");
+    expect(solveOne({ ...BECK, temperature: 40 }, {}, ["pH"]).warnings).toBe("");
+    expect(solveOne({ temperature: 60, totals: { Na: 1e-3 }, pCO2: { atm: 4e-4 } }, { complexes: "none" }, ["pH"]).warnings).toBe("");
   });
 });
 
