@@ -1,7 +1,7 @@
 /**
  * The certificate of a returned state: its largest relative error in anything it claims, in plain arithmetic from the returned
- * concentrations, activities and amounts. Shares no code with the solver: no sparse tables, no eliminated phases, no logarithmic
- * residuals; ionic strength, activity coefficients and water activity are computed again from the concentrations.
+ * concentrations, activities and amounts. Shares no code and no table with the solver: no eliminated phases, no logarithmic residuals, lists
+ * of its own of the species in each balance; ionic strength, activity coefficients and water activity are computed again from the concentrations.
  *
  * The largest of
  *   balance      |Σ_i ν_ij c_i + Σ_k s_kj λ_k − T_j| / (Σ_i |ν_ij| c_i + Σ_k |s_kj λ_k| + |T_j|)      for each component present whose total is claimed
@@ -33,6 +33,11 @@ export interface Claim {
   tieKind: Uint8Array;
   /** Amount of a bounded tie, mol/kg. */
   tieAmount: Float64Array;
+  /** Scratch and tables of the certificate itself. */
+  holders: Int32Array[];
+  lnGamma: Float64Array;
+  sum: number;
+  scale: number;
 }
 
 export function makeClaim(tableau: Tableau, size: number): Claim {
@@ -41,7 +46,15 @@ export function makeClaim(tableau: Tableau, size: number): Claim {
     c: new Float64Array(tableau.speciesCount), x: new Float64Array(n), present: new Uint8Array(n), totals: new Float64Array(n),
     usesAlkalinity: false, isFree: new Uint8Array(n), sourceCount: 0, sourceNu: [], sourceAmount: new Float64Array(size),
     tieCount: 0, tiePhase: [], tieTarget: new Float64Array(size), tieKind: new Uint8Array(size), tieAmount: new Float64Array(size),
+    holders: Array.from({ length: n }, (_, j) => holdersOf(tableau, j)), lnGamma: new Float64Array(tableau.gamma.count), sum: 0, scale: 0,
   };
+}
+
+/** Species that count in the balance of a component. */
+function holdersOf(tableau: Tableau, j: number): Int32Array {
+  const n = tableau.componentCount;
+  const all = Array.from({ length: tableau.speciesCount }, (_, i) => i);
+  return Int32Array.from(all.filter((i) => tableau.nu[i * n + j] !== 0 || (j === 0 && tableau.alkalinity[i] !== 0)));
 }
 
 /** @returns the residual, NaN where the state is not made of numbers. */
@@ -63,6 +76,7 @@ export function certify(tableau: Tableau, constants: Constants, claim: Claim): n
 function massActionError(tableau: Tableau, constants: Constants, claim: Claim, strength: number, lnWater: number): number {
   const n = tableau.componentCount;
   let worst = 0;
+  for (let k = 0; k < claim.lnGamma.length; k++) claim.lnGamma[k] = lnGamma(tableau, constants, k, strength);
   for (let i = 0; i < tableau.speciesCount; i++) {
     let lnActivity = constants.lnK[i] + tableau.water[i] * lnWater;
     let isPresent = true;
@@ -74,7 +88,7 @@ function massActionError(tableau: Tableau, constants: Constants, claim: Claim, s
     }
     if (!isPresent) { if (claim.c[i] !== 0) return NaN; continue; }
     if (i === tableau.varying) lnActivity = claim.x[tableau.varyingAcid] + oneSite(tableau, claim.x[0]);
-    const expected = lnActivity - lnGamma(tableau, constants, tableau.gammaClass[i], strength);
+    const expected = lnActivity - claim.lnGamma[tableau.gammaClass[i]];
     if (expected < -690 && claim.c[i] < 1e-299) continue; // below the smallest normal double
     const error = Math.abs(Math.log(claim.c[i]) - expected);
     if (!(error <= worst)) worst = error;
@@ -103,29 +117,33 @@ function balanceError(tableau: Tableau, claim: Claim): number {
   let worst = 0;
   for (let j = 0; j < tableau.componentCount; j++) {
     if (claim.present[j] === 0 || claim.isFree[j] === 1) continue;
-    const error = Math.abs(imbalance(tableau, claim, j)) / balanceScale(tableau, claim, j);
+    sumBalance(tableau, claim, j);
+    const error = Math.abs(claim.sum) / claim.scale;
     if (!(error <= worst)) worst = error;
   }
   return worst;
 }
 
-/** ν_ij, or for hydrogen under an alkalinity minus the equivalents. */
-function weight(tableau: Tableau, claim: Claim, i: number, j: number): number {
-  return j === 0 && claim.usesAlkalinity ? -tableau.alkalinity[i] : tableau.nu[i * tableau.componentCount + j];
-}
-
-function imbalance(tableau: Tableau, claim: Claim, j: number): number {
+/** Sum and scale of a component's balance into the claim: ν_ij, or for hydrogen under an alkalinity minus the equivalents. */
+function sumBalance(tableau: Tableau, claim: Claim, j: number): void {
+  const n = tableau.componentCount;
+  const isAlkalinity = j === 0 && claim.usesAlkalinity;
+  const holders = claim.holders[j];
   let sum = -claim.totals[j];
-  for (let i = 0; i < tableau.speciesCount; i++) sum += weight(tableau, claim, i, j) * claim.c[i];
-  for (let k = 0; k < claim.sourceCount; k++) sum += claim.sourceNu[k][j] * claim.sourceAmount[k];
-  return sum;
-}
-
-function balanceScale(tableau: Tableau, claim: Claim, j: number): number {
-  let sum = Math.abs(claim.totals[j]);
-  for (let i = 0; i < tableau.speciesCount; i++) sum += Math.abs(weight(tableau, claim, i, j)) * claim.c[i];
-  for (let k = 0; k < claim.sourceCount; k++) sum += Math.abs(claim.sourceNu[k][j] * claim.sourceAmount[k]);
-  return sum;
+  let scale = Math.abs(sum);
+  for (let p = 0; p < holders.length; p++) {
+    const i = holders[p];
+    const part = (isAlkalinity ? -tableau.alkalinity[i] : tableau.nu[i * n + j]) * claim.c[i];
+    sum += part;
+    scale += Math.abs(part);
+  }
+  for (let k = 0; k < claim.sourceCount; k++) {
+    const part = claim.sourceNu[k][j] * claim.sourceAmount[k];
+    sum += part;
+    scale += Math.abs(part);
+  }
+  claim.sum = sum;
+  claim.scale = scale;
 }
 
 function tieError(tableau: Tableau, claim: Claim, lnWater: number): number {
@@ -139,7 +157,7 @@ function tieError(tableau: Tableau, claim: Claim, lnWater: number): number {
       if (phase.nu[j] === 0) continue;
       if (claim.present[j] === 0) { isPresent = false; continue; }
       excess += phase.nu[j] * claim.x[j];
-      if (claim.tieKind[m] === TIE.bounded) scale = Math.max(scale, balanceScale(tableau, claim, j));
+      if (claim.tieKind[m] === TIE.bounded) { sumBalance(tableau, claim, j); scale = Math.max(scale, claim.scale); }
     }
     let error: number;
     if (!isPresent) error = claim.tieKind[m] === TIE.held ? NaN : 0; // a solid without one of its components cannot form

@@ -6,6 +6,7 @@
  *   logarithmic  G_a = ln(P_a/Q_a), near-linear in y over many decades, dimensionless, so traces weigh as much as major ions;
  *   linear       F_a = (P_a − Q_a)/(P_a + Q_a), the scaled gradient of the convex function.
  */
+import { generateCode, SOLVES_BEFORE_CODE } from "./generated";
 import type { System } from "./system";
 import type { Tableau } from "./tableau";
 import type { Workspace } from "./workspace";
@@ -57,6 +58,7 @@ export function evaluateActivity(tableau: Tableau, ws: Workspace): void {
 
 /** Start of a solve: constants and totals in the system's terms, y from `ws.x`. */
 export function loadSystem(system: System, ws: Workspace, n: number): void {
+  if (++system.solves === SOLVES_BEFORE_CODE) system.code = generateCode(system);
   const { lnK } = ws.constants;
   const phaseCount = system.phases.length;
   for (let s = 0; s < system.species.length; s++) {
@@ -74,6 +76,7 @@ export function loadSystem(system: System, ws: Workspace, n: number): void {
 
 /** Concentrations at (y, I, M), the sides P and Q of each balance, and the I and M that these concentrations have. */
 export function evaluateSystem(system: System, ws: Workspace): void {
+  if (system.code) { system.code.evaluate(ws); return; }
   const { nStart, nColumn, nValue, wStart, wRow, wValue, gammaClass, water, charge } = system;
   const { y, base, cs, lnGamma, plus, minus, balanceTotal, lnWater } = ws;
   for (let a = 0; a < system.size; a++) {
@@ -128,6 +131,10 @@ export function assembleJacobian(system: System, ws: Workspace, form: "log" | "b
   const { nStart, nColumn, nValue, wStart, wRow, wValue, gammaClass, water, charge, size } = system;
   const { cs, matrix, plus, minus, gammaSlope, waterSlope } = ws;
   const bordered = form === "bordered";
+  if (system.code && form !== "linear") {
+    if (bordered) system.code.assembleBordered(ws); else system.code.assembleLog(ws);
+    return bordered ? size + 2 : size;
+  }
   const isLog = form !== "linear";
   const ld = bordered ? size + 2 : size;
   matrix.fill(0, 0, ld * ld);
@@ -144,7 +151,7 @@ export function assembleJacobian(system: System, ws: Workspace, form: "log" | "b
     for (let p = wStart[s], end = wStart[s + 1]; p < end; p++) {
       const a = wRow[p];
       const w = wValue[p];
-      const f = isLog ? w * c / (w > 0 ? plus[a] : minus[a]) : w * c / (plus[a] + minus[a]);
+      const f = w * c * (isLog ? 1 / (w > 0 ? plus[a] : minus[a]) : 1 / (plus[a] + minus[a]));
       const row = a * ld;
       for (let q = from; q < to; q++) matrix[row + nColumn[q]] += f * nValue[q];
       if (bordered) { matrix[row + size] += f * slopeI; matrix[row + size + 1] += f * slopeM; }

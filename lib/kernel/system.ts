@@ -12,9 +12,13 @@
  * of weights W = R·ν_i (wStart, wRow, wValue).
  */
 import { eliminate, type Elimination } from "./linear";
+import type { GeneratedCode } from "./generated";
 import type { Phase, Tableau } from "./tableau";
 
 export interface System {
+  /** Solves so far, and straight-line code once there were enough of them. */
+  solves: number;
+  code: GeneratedCode | null;
   /** Unknowns and balances. */
   size: number;
   /** Tableau indices of the species present. */
@@ -104,7 +108,7 @@ export function buildSystem(tableau: Tableau, plan: SystemPlan): System | Depend
   const b = varying >= 0 ? tables.nStart[varying + 1] : 0;
   const columns = tables.nColumn.subarray(a, b);
   return {
-    size, species: Int32Array.from(species), present: plan.present, ...tables,
+    solves: 0, code: null, size, species: Int32Array.from(species), present: plan.present, ...tables,
     charge: Float64Array.from(species, (i) => tableau.charge[i]),
     gammaClass: Int32Array.from(species, (i) => tableau.gammaClass[i]),
     phases: plan.phases, free, rowComponent,
