@@ -24,6 +24,8 @@ import type { Workspace } from "./workspace";
 const STOP = 2e-13;
 const ROUNDING = 1e-11;
 const CORE_STEPS = 400;
+/** Steps in which the activity of water may settle beside the balances. */
+const FOLLOWING_STEPS = 30;
 const WATER_STEPS = 90;
 const HIGHEST_STRENGTH = 30;
 const STRENGTH_FACTOR = 1.2;
@@ -31,16 +33,25 @@ const STRENGTH_FACTOR = 1.2;
 export const CONVEX_STRENGTH = 0.4;
 /** Sum of solutes at which 1 − 0.017·Σc reaches 0.02. */
 export const MOST_SOLUTES = 57.6;
+/** Relative change of the sum of solutes at which its steps end. */
+const ROUGH_WATER = 1e-7;
+const EXACT_WATER = 1e-14;
 const LEAST_STRENGTH = 1e-12;
 
 export type SureResult = "solved" | "no-finite-solution" | "failed";
 
 /** Solves for the concentrations at the activity coefficients in the workspace; false where it could not. */
-export type Inner = () => boolean;
+export interface Inner {
+  (): boolean;
+  /** The same with the activity of water following the concentrations on the way; false where that does not settle. */
+  following?: () => boolean;
+}
 
 /** Solves a convex system from `ws.y`. On "solved" the state is in `ws.y`, `ws.cs`, `ws.ionicStrength`, `ws.soluteSum`. */
 export function solveSurely(system: System, tableau: Tableau, ws: Workspace): SureResult {
-  return searchStrength(tableau, ws, () => core(system, tableau, ws));
+  const inner: Inner = () => core(system, tableau, ws);
+  inner.following = () => core(system, tableau, ws, FOLLOWING_STEPS);
+  return searchStrength(tableau, ws, inner);
 }
 
 /** The search over ionic strength, around any way to solve at fixed activity coefficients. */
@@ -55,8 +66,8 @@ export function searchStrength(tableau: Tableau, ws: Workspace, inner: Inner): S
     const last = Math.log1p(phiLow / low);
     low = high;
     phiLow = phiHigh;
-    high *= STRENGTH_FACTOR;
-    if (high > HIGHEST_STRENGTH) return "no-finite-solution";
+    if (low >= HIGHEST_STRENGTH) return "no-finite-solution";
+    high = Math.min(high * STRENGTH_FACTOR, HIGHEST_STRENGTH);
     phiHigh = strengthError(tableau, ws, inner, high);
     const middle = Math.log1p(phiLow / low);
     if (phiHigh > 0 && middle < last && middle < Math.log1p(phiHigh / high)) {
@@ -105,14 +116,22 @@ function closeBracket(tableau: Tableau, ws: Workspace, inner: Inner, b: Bracket)
 
 /** φ(I), with the core solved at γ(I); NaN where the core did not converge, huge where the solutes outgrow the water activity's law. */
 function strengthError(tableau: Tableau, ws: Workspace, inner: Inner, ionicStrength: number): number {
+  // A sign is soon known; only near the root must the activity of water be exact.
+  const rough = errorAt(tableau, ws, inner, ionicStrength, ROUGH_WATER);
+  return Math.abs(rough) > 1e-3 * ionicStrength ? rough : errorAt(tableau, ws, inner, ionicStrength, EXACT_WATER);
+}
+
+function errorAt(tableau: Tableau, ws: Workspace, inner: Inner, ionicStrength: number, waterStop: number): number {
   ws.ionicStrength = ionicStrength;
   let low = 0;
   let high = MOST_SOLUTES;
   ws.soluteSum = Math.min(ws.soluteSum, high);
+  if (inner.following && inner.following()) return ws.sumM >= MOST_SOLUTES ? Number.MAX_VALUE : ws.sumI - ionicStrength;
+  if (!(ws.soluteSum >= 0 && ws.soluteSum <= high)) ws.soluteSum = 0;
   for (let k = 0; k < WATER_STEPS; k++) {
     evaluateActivity(tableau, ws);
     if (!inner()) return NaN;
-    if (Math.abs(ws.sumM - ws.soluteSum) <= 1e-14 * (1 + ws.sumM)) return ws.sumI - ionicStrength;
+    if (Math.abs(ws.sumM - ws.soluteSum) <= waterStop * (1 + ws.sumM)) return ws.sumI - ionicStrength;
     if (ws.sumM > ws.soluteSum) low = ws.soluteSum; else high = ws.soluteSum;
     if (low >= MOST_SOLUTES) return Number.MAX_VALUE;
     // Plain steps first; then halving, which cannot oscillate: the more solutes, the less water, and so the fewer solutes.
@@ -122,11 +141,19 @@ function strengthError(tableau: Tableau, ws: Workspace, inner: Inner, ionicStren
   return Math.abs(high - low) <= 1e-9 * (1 + high) ? ws.sumI - ionicStrength : NaN;
 }
 
-/** Newton at the activity coefficients in `ws`; @returns whether it converged. */
-export function core(system: System, tableau: Tableau, ws: Workspace): boolean {
+/**
+ * Newton at the activity coefficients in `ws`; @returns whether it converged.
+ * @param following steps allowed with the activity of water following the concentrations, which may not converge; 0: it stays.
+ */
+export function core(system: System, tableau: Tableau, ws: Workspace, following = 0): boolean {
   if (tableau.gamma.isIdeal) evaluateActivity(tableau, ws);
+  const steps = following > 0 ? following : CORE_STEPS;
   let previous = Infinity;
-  for (let step = 0; step <= CORE_STEPS; step++) {
+  for (let step = 0; step <= steps; step++) {
+    if (following > 0) {
+      if (step > 0) followSolutes(system, ws);
+      evaluateActivity(tableau, ws);
+    }
     evaluateSystem(system, ws);
     let error = 0;
     for (let a = 0; a < system.size; a++) {
@@ -135,7 +162,9 @@ export function core(system: System, tableau: Tableau, ws: Workspace): boolean {
       if (!(Math.abs(f) <= error)) error = Math.abs(f);
     }
     if (!Number.isFinite(error)) return false;
-    if (error <= STOP || (error <= ROUNDING && error > 0.5 * previous)) return true;
+    // More solutes than the law of the water activity holds for even where that is least: settled, beyond the end.
+    const isSettled = following === 0 || Math.abs(ws.sumM - ws.soluteSum) <= EXACT_WATER * (1 + ws.sumM) || (ws.soluteSum === MOST_SOLUTES && ws.sumM >= MOST_SOLUTES);
+    if (isSettled && (error <= STOP || (error <= ROUNDING && error > 0.5 * previous))) return true;
     previous = error;
     ws.iterations++;
     assembleJacobian(system, ws, "linear");
@@ -145,6 +174,14 @@ export function core(system: System, tableau: Tableau, ws: Workspace): boolean {
     for (let b = 0; b < system.size; b++) ws.y[b] += t * ws.step[b];
   }
   return false;
+}
+
+/** Newton's step for M = Σc(M) alone: dΣc/dM = −Σ w c·0.017/a_w at fixed activities. */
+function followSolutes(system: System, ws: Workspace): void {
+  let bound = 0;
+  for (let s = 0; s < system.gammaClass.length; s++) bound += system.water[s] * ws.cs[s];
+  const slope = Math.max(0, 0.017 * bound / Math.exp(ws.lnWater));
+  ws.soluteSum = Math.min(Math.max(ws.soluteSum + (ws.sumM - ws.soluteSum) / (1 + slope), 0), MOST_SOLUTES);
 }
 
 /** β = max_i |N_i·d|, the largest change of ln c along the step. */

@@ -17,7 +17,7 @@
  */
 import { componentSum, evaluateActivity, evaluateSystem, loadSystem, unloadSystem } from "./evaluate";
 import { CARBON, CLOSURE, type Closure, HYDROGEN, type Kernel, systemFor } from "./kernel";
-import { solveSystem } from "./solve-system";
+import { solveSystem, type SolveOptions, type SolveResult } from "./solve-system";
 import { coldStart, ROUGH_K1, ROUGH_K2 } from "./start";
 import type { System } from "./system";
 
@@ -54,10 +54,15 @@ export function makeSettleResult(): SettleResult {
   return { outcome: "failed", states: 0, least: NaN, most: NaN, unknown: "carbon", from: NaN, to: NaN };
 }
 
-/** Brackets of the unknowns, natural logarithms: a(CO2) 1e-20 … 10, pH −2 … 16. */
-const CARBON_RANGE = [Math.log(1e-20), Math.log(10)] as const;
+/**
+ * Brackets of the unknowns, natural logarithms: a(CO2) 1e-25 … 10 mol/kg, pH −2 … 16. At 25 °C 10 mol/kg stand for some 300 atm, where CO2
+ * is no gas above a water any more.
+ */
+const CARBON_RANGE = [Math.log(1e-25), Math.log(10)] as const;
 const HYDROGEN_RANGE = [-16 * Math.LN10, 2 * Math.LN10] as const;
-const SCAN_POINTS = 48;
+/** Filled anew for each solve, so that a row allocates nothing. */
+const COLD: SolveOptions = { maxIterations: 0, isCold: true };
+const SCAN_POINTS = 56;
 
 /**
  * @param kernel its workspace holds constants and totals on entry, the state on "solved".
@@ -70,7 +75,8 @@ export function settle(kernel: Kernel, facts: Facts, result: SettleResult): void
   if (closure !== CLOSURE.balanceSaturated) {
     coldStart(kernel, facts);
     setTargets(kernel, facts);
-    const solved = solveSystem(system, kernel.tableau, kernel.ws, { maxIterations, isCold: true });
+    COLD.maxIterations = maxIterations;
+    const solved = solveSystem(system, kernel.tableau, kernel.ws, COLD);
     result.outcome = solved;
     if (solved === "solved" && (system.isConvex || isInRange(kernel))) return;
     if (system.isConvex) return;
@@ -112,24 +118,40 @@ function setTargets(kernel: Kernel, facts: Facts): void {
 /**
  * The convex system at one value of the unknown, and the error of the fact left out; NaN where it could not be solved, Infinity where it
  * has no finite solution (CO2 at 300 atm over a base, say): no root lies there.
+ * @param isNear the workspace holds the state at a value near by, to start from.
  */
-function errorAt(kernel: Kernel, facts: Facts, u: number): number {
+function errorAt(kernel: Kernel, facts: Facts, u: number, isNear: boolean): number {
   const inner: Facts = innerFacts(facts, u);
   const { ws, tableau } = kernel;
   const system = wholeSystem(kernel, inner);
   if (!system.isConvex) {
+    let isSolved = false;
+    if (isNear) {
+      setTargets(kernel, inner);
+      isSolved = solveSystem(system, tableau, ws, { maxIterations: facts.maxIterations, isCold: false }) === "solved" && isInRange(kernel);
+    }
     const result = makeSettleResult();
-    settle(kernel, inner, result);
-    if (result.outcome !== "solved") return result.outcome === "failed" ? NaN : Infinity;
+    if (!isSolved) settle(kernel, inner, result);
+    if (!isSolved && result.outcome !== "solved") return result.outcome === "failed" ? NaN : Infinity;
   } else {
-    coldStart(kernel, inner);
-    setTargets(kernel, inner);
-    const solved = solveSystem(system, tableau, ws, { maxIterations: facts.maxIterations, isCold: true });
+    const solved = solveInner(kernel, inner, system, isNear);
     if (solved !== "solved") return solved === "failed" ? NaN : Infinity;
   }
   if (facts.closure === CLOSURE.gasTotal) return Math.log(componentSum(tableau, ws.c, CARBON) / ws.totals[CARBON]);
   if (facts.solid >= 0) return solidError(kernel, facts);
   return hydrogenError(kernel, facts.usesAlkalinity);
+}
+
+function solveInner(kernel: Kernel, inner: Facts, system: System, isNear: boolean): SolveResult {
+  const { ws, tableau } = kernel;
+  const { maxIterations } = inner;
+  setTargets(kernel, inner);
+  if (isNear) {
+    const solved = solveSystem(system, tableau, ws, { maxIterations, isCold: false, isFollowed: true });
+    if (solved !== "failed") return solved;
+  }
+  coldStart(kernel, inner);
+  return solveSystem(system, tableau, ws, { maxIterations, isCold: true });
 }
 
 function innerFacts(facts: Facts, u: number): Facts {
@@ -181,7 +203,13 @@ function scan(kernel: Kernel, facts: Facts, result: SettleResult): void {
   const high = isHydrogenUnknown(facts) || Number.isNaN(facts.xH) ? widest : Math.min(widest, mostCarbon(facts.xH));
   // From the side of lowest pH: much acid, or much CO2.
   const at = (k: number) => high + (low - high) * k / SCAN_POINTS;
-  const error = (u: number) => errorAt(kernel, facts, u);
+  let isNear = false;
+  let wasEndless = false;
+  const error = (u: number) => {
+    const g = errorAt(kernel, facts, u, isNear);
+    isNear = Number.isFinite(g);
+    return g;
+  };
   const canTurn = facts.closure === CLOSURE.balanceSaturated;
   let states = 0;
   let bracket: [number, number, number, number] | null = null;
@@ -195,9 +223,14 @@ function scan(kernel: Kernel, facts: Facts, result: SettleResult): void {
   let last = NaN;
   for (let k = 0; k <= SCAN_POINTS; k++) {
     let g = error(at(k));
+    const isEndless = g === Infinity;
     if (Number.isNaN(g)) isComplete = false;
     else if (!Number.isFinite(g)) g = NaN;
-    else { result.least = Math.min(result.least, g); result.most = Math.max(result.most, g); }
+    else if (!bracket && k > 0 && wasEndless) {
+      const edge = findAtEdge(error, at(k), g, at(k - 1));
+      if (edge) { states++; bracket = edge; }
+    }
+    if (Number.isFinite(g)) { result.least = Math.min(result.least, g); result.most = Math.max(result.most, g); }
     if (last * g <= 0 && g !== last) {
       states++;
       bracket ??= [at(k - 1), last, at(k), g];
@@ -205,12 +238,36 @@ function scan(kernel: Kernel, facts: Facts, result: SettleResult): void {
       const turned = findTurn(error, at(k - 2), at(k), Math.sign(last));
       if (turned) { states += 2; bracket ??= [at(k - 2), before, turned[0], turned[1]]; }
     }
+    if (isEndless && !bracket && Number.isFinite(last)) {
+      const edge = findAtEdge(error, at(k - 1), last, at(k));
+      if (edge) { states++; bracket = edge; }
+    }
     before = last;
     last = g;
+    wasEndless = isEndless;
   }
   result.states = states;
   if (!bracket) { result.outcome = isComplete ? "no-state" : "failed"; return; }
   result.outcome = closeRoot(kernel, facts, bracket) ? "solved" : "failed";
+}
+
+/**
+ * Between a point with an error and one without a finite solution: a point of the other sign, if the edge of what is finite lies beyond it.
+ * From the outer side inwards, so that a bracket's first point is the one of lower pH.
+ */
+function findAtEdge(error: (u: number) => number, inside: number, g: number, outside: number): [number, number, number, number] | null {
+  let from = inside;
+  let gFrom = g;
+  let to = outside;
+  for (let k = 0; k < 20; k++) {
+    const u = 0.5 * (from + to);
+    const each = error(u);
+    if (!Number.isFinite(each)) { to = u; continue; }
+    if (each * g <= 0) return [u, each, from, gFrom];
+    from = u;
+    gFrom = each;
+  }
+  return null;
 }
 
 /** Golden-section search for a point of the other sign between two points of one sign; null where the peak stays short. */
@@ -239,7 +296,7 @@ function closeRoot(kernel: Kernel, facts: Facts, bracket: [number, number, numbe
   for (let k = 0; k < 120; k++) {
     const secant = a + (b - a) * (ga / (ga - gb));
     const u = k % 3 === 2 || !Number.isFinite(secant) ? 0.5 * (a + b) : secant;
-    const g = errorAt(kernel, facts, u);
+    const g = errorAt(kernel, facts, u, k > 0);
     if (!Number.isFinite(g)) return false;
     if (!hasTried && (Math.abs(b - a) < 0.05 || Math.abs(g) < 1e-3)) {
       hasTried = true;

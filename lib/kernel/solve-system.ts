@@ -17,20 +17,27 @@ export interface SolveOptions {
   maxIterations: number;
   /** Improve the start by solving single balances in closed form first (for starts made of totals). */
   isCold: boolean;
+  /** The start is the state of a problem next to this one: Newton's answer near it is on the same branch and needs no second look. */
+  isFollowed?: boolean;
 }
+
+/** Factor of ionic strength within which a followed answer is near. */
+const NEAR_STRENGTH = 1.5;
 
 /**
  * @param ws totals, targets, constants and the start (`x`, `ionicStrength`, `soluteSum`) on entry; state and amounts on "solved".
  */
 export function solveSystem(system: System, tableau: Tableau, ws: Workspace, options: SolveOptions): SolveResult {
   const n = tableau.componentCount;
+  const startStrength = options.isFollowed ? ws.ionicStrength : NaN;
   bindGamma(tableau, ws);
   loadSystem(system, ws, n);
   if (system.isConvex) keepStart(ws, system);
   if (options.isCold) relax(system, tableau, ws);
   let result: SolveResult = "failed";
   if (newton(system, tableau, ws, Math.min(options.maxIterations, NEWTON_STEPS))) result = "solved";
-  const isSuspect = result === "solved" && !tableau.gamma.isIdeal && ws.ionicStrength > CONVEX_STRENGTH;
+  const isNear = ws.ionicStrength < NEAR_STRENGTH * startStrength && startStrength < NEAR_STRENGTH * ws.ionicStrength;
+  const isSuspect = result === "solved" && !isNear && !tableau.gamma.isIdeal && ws.ionicStrength > CONVEX_STRENGTH;
   if (system.isConvex && (result === "failed" || isSuspect) && options.maxIterations > 1) {
     restoreStart(ws, system);
     result = solveSurely(system, tableau, ws);
