@@ -13,7 +13,10 @@ function witnessOf(water: Partial<ResolvedWater>, kase: Partial<ResolvedCase>) {
 
 describe("witnesses", () => {
   it("of solids that contradict: a combination that cancels in composition and not in saturation", () => {
-    for (const set of [{ aragonite: "excess", calcite: "may-form" }, { calcite: "excess", celestite: "excess", anhydrite: "excess", strontianite: "excess" }, { vaterite: "excess", aragonite: 1e-3 }] as const) {
+    const sets: Record<string, "excess" | "may-form" | number>[] = [
+      { aragonite: "excess", calcite: "may-form" }, { calcite: "excess", celestite: "excess", anhydrite: "excess", strontianite: "excess" }, { vaterite: "excess", aragonite: 1e-3 },
+    ];
+    for (const set of sets) {
       const witness = witnessOf(BECK, meeting("open", set));
       expect(witness?.kind).toBe("solids");
       expect(provesContradiction(witness as SolidsWitness)).toBe(true);
