@@ -12,7 +12,7 @@ import { type ResolvedCase, type ResolvedJob, type ResolvedWater, STATUS } from 
 import { certify, type Claim, makeClaim, TIE } from "@/lib/kernel/certificate";
 import { componentSum } from "@/lib/kernel/evaluate";
 import { CARBON, CLOSURE, HYDROGEN, type Kernel, makeKernel } from "@/lib/kernel/kernel";
-import { type Facts, makeSettleResult, settle, type SettleResult } from "@/lib/kernel/settle";
+import { type Facts, makeSettleResult, refineSettled, settle, type SettleResult } from "@/lib/kernel/settle";
 import type { Constants } from "@/lib/kernel/tableau";
 import type { Witness } from "@/lib/kernel/witness";
 
@@ -210,6 +210,17 @@ function setFacts(parts: Parts, celsius: number): { message: string; witness: Wi
 }
 
 function certifySettled(parts: Parts): void {
+  const { solver, job } = parts;
+  let residual = settledResidual(parts);
+  if (!(residual <= job.solver.tolerance)) {
+    refineSettled(solver.kernel, parts.settling);
+    residual = settledResidual(parts);
+  }
+  solver.residual = Math.max(solver.residual, residual);
+  solver.onState?.(parts.claim, solver.kernel.ws.constants);
+}
+
+function settledResidual(parts: Parts): number {
   const { solver, claim, settling } = parts;
   const { kernel, present, model } = solver;
   const { ws } = kernel;
@@ -228,8 +239,7 @@ function certifySettled(parts: Parts): void {
   if (!Number.isNaN(settling.xH)) holdTie(claim, kernel.holdsHydrogen, settling.xH);
   if (!Number.isNaN(settling.xC)) holdTie(claim, kernel.holdsCarbon, settling.xC);
   if (settling.solid >= 0) holdTie(claim, model.phases[settling.solid], settling.solidTarget);
-  solver.residual = Math.max(solver.residual, certify(kernel.tableau, ws.constants, claim));
-  solver.onState?.(claim, ws.constants);
+  return certify(kernel.tableau, ws.constants, claim);
 }
 
 export function holdTie(claim: Claim, phase: Claim["tiePhase"][number], target: number): void {

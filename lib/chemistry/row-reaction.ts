@@ -4,7 +4,7 @@ import type { ChemistryModel } from "@/lib/chemistry/chemistry-model";
 import { SUPPLY } from "@/lib/chemistry/row-inputs";
 import { pressureOf } from "@/lib/chemistry/row-problem";
 import { type ResolvedJob, STATUS } from "@/lib/chemistry/types";
-import { type Assemblage, makeAssemblage, solveAssemblage } from "@/lib/kernel/assemblage";
+import { type Assemblage, makeAssemblage, refineAssemblage, solveAssemblage } from "@/lib/kernel/assemblage";
 import { certify, type Claim, makeClaim, TIE } from "@/lib/kernel/certificate";
 import { componentSum } from "@/lib/kernel/evaluate";
 import { CARBON, HYDROGEN } from "@/lib/kernel/kernel";
@@ -77,6 +77,12 @@ export function runReaction(solver: CaseSolver, constants: Constants, settings: 
     outcome.message = `not converged while reacting with ${heldNames(solver, !Number.isNaN(xC)) || "the gas"}`;
     return outcome;
   }
+  let residual = certifyReaction(solver, constants, xC);
+  if (!(residual <= settings.tolerance)) {
+    refineAssemblage(kernel, assemblage);
+    residual = certifyReaction(solver, constants, xC);
+  }
+  solver.onState?.(reaction.claim, constants);
   for (let k = 0; k < assemblage.count; k++) {
     const place = reaction.places[k];
     const supply = input.supplyKind[place] === SUPPLY.finite ? input.supplies[place] : 0;
@@ -84,7 +90,7 @@ export function runReaction(solver: CaseSolver, constants: Constants, settings: 
     if (assemblage.isTied[k]) outcome.isDependent = true;
   }
   reaction.gasTaken = 0 - assemblage.gasAmount; // not −0
-  outcome.residual = certifyReaction(solver, constants, xC);
+  outcome.residual = residual;
   return outcome;
 }
 
@@ -231,7 +237,6 @@ function certifyReaction(solver: CaseSolver, constants: Constants, xC: number): 
   for (let k = 0; k < a.count; k++) {
     claimPhase(claim, model.phases[a.solids[k]], a.targets[k], a.amounts[k], a.isExcess[k] === 1);
   }
-  solver.onState?.(claim, constants);
   return certify(kernel.tableau, constants, claim);
 }
 

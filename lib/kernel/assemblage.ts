@@ -16,13 +16,12 @@
  * linear constraints; Boyd & Vandenberghe 2004, ch. 5 and 10). Where the changes do not end, or a set met on the way has no finite state
  * of its own, the nested search (nested.ts) takes over, which solves for the assemblage at fixed γ and searches over ionic strength.
  */
-import { type Assemblage, boundStart, heldSystem, readAmounts, setTargets } from "./held-solids";
+import { type Assemblage, boundStart, coldStartHeld, heldSystem, readAmounts, setTargets } from "./held-solids";
 import type { Kernel } from "./kernel";
 import { solveNested } from "./nested";
 import { nextChange } from "./solid-changes";
 import { pickExcess, spreadTies } from "./solid-ties";
 import { solveSystem, type SolveResult } from "./solve-system";
-import { coldStart } from "./start";
 import type { System } from "./system";
 
 export { type Assemblage, makeAssemblage } from "./held-solids";
@@ -75,6 +74,15 @@ function solveHeld(kernel: Kernel, a: Assemblage, system: System): SolveResult {
   boundStart(kernel, a);
   const first = solveSystem(system, tableau, ws, { maxIterations, isCold: false });
   if (first !== "failed") return first;
-  coldStart(kernel, a);
+  coldStartHeld(kernel, a);
   return solveSystem(system, tableau, ws, { maxIterations, isCold: true });
+}
+
+/** Takes a solved assemblage on to where rounding ends, for states whose balances cancel large amounts. */
+export function refineAssemblage(kernel: Kernel, a: Assemblage): void {
+  setTargets(kernel, a);
+  const options = { maxIterations: a.maxIterations, isCold: false, isFollowed: true, isTight: true };
+  if (solveSystem(heldSystem(kernel, a), kernel.tableau, kernel.ws, options) !== "solved") return;
+  readAmounts(kernel, a);
+  spreadTies(kernel, a);
 }

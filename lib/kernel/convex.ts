@@ -167,11 +167,23 @@ export function core(system: System, tableau: Tableau, ws: Workspace, following 
     if (isSettled && (error <= STOP || (error <= ROUNDING && error > 0.5 * previous))) return true;
     previous = error;
     ws.iterations++;
-    assembleJacobian(system, ws, "linear");
-    if (!solveDense(ws.matrix, ws.step, system.size, system.size)) return false;
+    if (!newtonStep(system, ws)) return false;
     const beta = longestChange(system, ws);
     const t = beta > 1e-3 ? Math.log1p(beta) / beta : 1;
     for (let b = 0; b < system.size; b++) ws.y[b] += t * ws.step[b];
+  }
+  return false;
+}
+
+/** The Newton step into `ws.step`; where rounding has made the matrix singular, one shortened towards the scaled gradient, still downhill. */
+function newtonStep(system: System, ws: Workspace): boolean {
+  const { size } = system;
+  ws.savedStep.set(ws.step);
+  for (let damping = 0; damping < 1; damping = damping === 0 ? 1e-9 : damping * 1000) {
+    assembleJacobian(system, ws, "linear");
+    for (let a = 0; a < size; a++) ws.matrix[a * size + a] += damping;
+    if (solveDense(ws.matrix, ws.step, size, size)) return true;
+    ws.step.set(ws.savedStep);
   }
   return false;
 }

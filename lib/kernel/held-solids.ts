@@ -3,7 +3,8 @@
  * targets, their amounts.
  */
 import { CLOSURE, type Kernel, systemFor } from "./kernel";
-import { SUPPLIED } from "./start";
+import { solveDense } from "./linear";
+import { coldStart, SUPPLIED } from "./start";
 import type { DependentPhases, System } from "./system";
 
 export interface Assemblage {
@@ -80,6 +81,31 @@ export function boundStart(kernel: Kernel, a: Assemblage): void {
   }
   ws.ionicStrength = Math.min(Math.max(ws.ionicStrength, 1e-7), 2);
   ws.soluteSum = Math.min(Math.max(ws.soluteSum, 1e-7), 5);
+}
+
+/**
+ * A cold start that the held phases agree with: of all x that satisfy them, the one nearest to the start made of totals,
+ * x += Aᵀ(AAᵀ)⁻¹(ρ − A·x), so that no component is thrown out to where its concentrations overflow.
+ */
+export function coldStartHeld(kernel: Kernel, a: Assemblage): void {
+  const { ws, tableau } = kernel;
+  coldStart(kernel, a);
+  const { phases } = heldSystem(kernel, a);
+  const m = phases.length;
+  const n = tableau.componentCount;
+  const { matrix, step, targets, x } = ws;
+  for (let p = 0; p < m; p++) {
+    let r = targets[p];
+    for (let j = 0; j < n; j++) if (phases[p].nu[j] !== 0) r -= phases[p].nu[j] * x[j];
+    step[p] = r;
+    for (let q = 0; q < m; q++) {
+      let v = 0;
+      for (let j = 0; j < n; j++) v += phases[p].nu[j] * phases[q].nu[j];
+      matrix[p * m + q] = v;
+    }
+  }
+  if (!solveDense(matrix, step, m, m)) return;
+  for (let p = 0; p < m; p++) for (let j = 0; j < n; j++) if (phases[p].nu[j] !== 0) x[j] += phases[p].nu[j] * step[p];
 }
 
 /** λ from the order of the system's phases to that of the assemblage. */

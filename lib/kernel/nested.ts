@@ -9,29 +9,32 @@
  */
 import { core, searchStrength, type SureResult } from "./convex";
 import { bindGamma, loadSystem, unloadSystem } from "./evaluate";
-import { type Assemblage, boundStart, heldSystem, readAmounts, setTargets } from "./held-solids";
+import { type Assemblage, boundStart, coldStartHeld, heldSystem, readAmounts, setTargets } from "./held-solids";
 import type { Kernel } from "./kernel";
 import { nextChange } from "./solid-changes";
-import { coldStart } from "./start";
 import type { System } from "./system";
 
 /** @param a as in solveAssemblage; the held set at hand is where it starts. */
 export function solveNested(kernel: Kernel, a: Assemblage): SureResult | "contradiction" {
   const { ws, tableau } = kernel;
-  let isContradiction = false;
+  const found = { last: "failed" as ReturnType<typeof solveAtStrength> };
   for (let k = 0; k < a.count; k++) if (!a.isExcess[k]) a.isHeld[k] = 0;
-  coldStart(kernel, a);
+  setTargets(kernel, a);
+  coldStartHeld(kernel, a);
   bindGamma(tableau, ws);
-  const inner = () => {
-    const found = solveAtStrength(kernel, a);
-    if (found === "contradiction") isContradiction = true;
-    return found === "solved";
-  };
-  const result = searchStrength(tableau, ws, inner);
-  return result === "failed" && isContradiction ? "contradiction" : result;
+  const result = searchStrength(tableau, ws, () => {
+    if (found.last === "contradiction") return false;
+    found.last = solveAtStrength(kernel, a);
+    return found.last === "solved" || found.last === "unless-drier";
+  });
+  return found.last === "contradiction" || (result === "solved" && found.last === "unless-drier") ? "contradiction" : result;
 }
 
-function solveAtStrength(kernel: Kernel, a: Assemblage): "solved" | "contradiction" | "failed" {
+/**
+ * "contradiction" holds at any ionic strength; "unless-drier" names one that hangs on the activity of water: the other solids are then at
+ * equilibrium, and whether it stands is seen where ionic strength agrees.
+ */
+function solveAtStrength(kernel: Kernel, a: Assemblage): "solved" | "contradiction" | "unless-drier" | "failed" {
   const bound = 40 + 12 * a.count;
   for (let change = 0; change < bound; change++) {
     const system = heldSystem(kernel, a);
@@ -40,9 +43,15 @@ function solveAtStrength(kernel: Kernel, a: Assemblage): "solved" | "contradicti
     readAmounts(kernel, a);
     const next = nextChange(kernel, a, change > bound / 2);
     if (next === "settled") return "solved";
-    if (next === "contradiction") return "contradiction";
+    if (next === "contradiction") return takesWater(kernel, a) ? "unless-drier" : "contradiction";
   }
   return "failed";
+}
+
+function takesWater(kernel: Kernel, a: Assemblage): boolean {
+  let water = 0;
+  for (let k = 0; k < a.count; k++) water += a.combination[k] * kernel.solids[a.solids[k]].water;
+  return Math.abs(water) > 1e-9 && !kernel.tableau.gamma.isIdeal;
 }
 
 /** From the state at hand; from a cold start where that fails. Ionic strength and water activity stay what the search set. */
@@ -51,7 +60,7 @@ function solveCore(kernel: Kernel, a: Assemblage, system: System): boolean {
   const { ionicStrength, soluteSum } = ws;
   setTargets(kernel, a);
   for (let attempt = 0; attempt < 2; attempt++) {
-    if (attempt > 0) coldStart(kernel, a); else boundStart(kernel, a);
+    if (attempt > 0) coldStartHeld(kernel, a); else boundStart(kernel, a);
     ws.ionicStrength = ionicStrength;
     ws.soluteSum = soluteSum;
     loadSystem(system, ws, tableau.componentCount);

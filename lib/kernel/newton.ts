@@ -24,8 +24,11 @@ const PHASE_A_STEPS = 25;
 const PHASE_A_STRENGTH = 0.5;
 const PHASE_A_SOLUTES = 2;
 
-/** @returns true where the system at `ws.y`, `ws.ionicStrength`, `ws.soluteSum` is solved; `ws.cs` then holds its concentrations. */
-export function newton(system: System, tableau: Tableau, ws: Workspace, maxIterations: number): boolean {
+/**
+ * @param stop lower than usual to go on until rounding is reached.
+ * @returns true where the system at `ws.y`, `ws.ionicStrength`, `ws.soluteSum` is solved; `ws.cs` then holds its concentrations.
+ */
+export function newton(system: System, tableau: Tableau, ws: Workspace, maxIterations: number, stop = STOP): boolean {
   const isIdeal = tableau.gamma.isIdeal;
   const size = system.size;
   let isFollowing = !isIdeal;
@@ -41,7 +44,7 @@ export function newton(system: System, tableau: Tableau, ws: Workspace, maxItera
     }
     let error = worst;
     if (!isIdeal && !isFollowing) error = Math.max(error, strengthErrors(system, ws));
-    if (error <= STOP && !isFollowing) return true;
+    if (error <= stop && !isFollowing) return true;
     if (error <= ROUNDING && error > 0.5 * previous) return true;
     if (iteration === maxIterations) return false;
     previous = error;

@@ -18,7 +18,7 @@
 import { componentSum, evaluateActivity, evaluateSystem, loadSystem, unloadSystem } from "./evaluate";
 import { CARBON, CLOSURE, type Closure, HYDROGEN, type Kernel, systemFor } from "./kernel";
 import { solveSystem, type SolveOptions, type SolveResult } from "./solve-system";
-import { coldStart, ROUGH_K1, ROUGH_K2 } from "./start";
+import { coldStart } from "./start";
 import type { System } from "./system";
 
 export interface Facts {
@@ -192,15 +192,8 @@ function isHydrogenUnknown(facts: Facts): boolean {
   return facts.closure === CLOSURE.gasTotal || facts.closure === CLOSURE.balanceGas || facts.closure === CLOSURE.balanceTotal;
 }
 
-/** ln a(CO2) at which carbonate at a held pH would exceed some 10,000 mol/kg at any activity coefficient: no answer lies near. */
-function mostCarbon(xH: number): number {
-  const perGas = ROUGH_K1 * Math.exp(-xH);
-  return Math.log(1e4 / (1 + perGas + perGas * ROUGH_K2 * Math.exp(-xH)));
-}
-
 function scan(kernel: Kernel, facts: Facts, result: SettleResult): void {
-  const [low, widest] = isHydrogenUnknown(facts) ? HYDROGEN_RANGE : CARBON_RANGE;
-  const high = isHydrogenUnknown(facts) || Number.isNaN(facts.xH) ? widest : Math.min(widest, mostCarbon(facts.xH));
+  const [low, high] = isHydrogenUnknown(facts) ? HYDROGEN_RANGE : CARBON_RANGE;
   // From the side of lowest pH: much acid, or much CO2.
   const at = (k: number) => high + (low - high) * k / SCAN_POINTS;
   let isNear = false;
@@ -321,4 +314,11 @@ function acceptPoint(kernel: Kernel, facts: Facts, system: System): void {
   evaluateActivity(tableau, ws);
   evaluateSystem(system, ws);
   unloadSystem(system, tableau, ws);
+}
+
+/** Takes a settled water on to where rounding ends. */
+export function refineSettled(kernel: Kernel, facts: Facts): void {
+  setTargets(kernel, facts);
+  const options = { maxIterations: facts.maxIterations, isCold: false, isFollowed: true, isTight: true };
+  solveSystem(wholeSystem(kernel, facts), kernel.tableau, kernel.ws, options);
 }

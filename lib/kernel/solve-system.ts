@@ -19,6 +19,8 @@ export interface SolveOptions {
   isCold: boolean;
   /** The start is the state of a problem next to this one: Newton's answer near it is on the same branch and needs no second look. */
   isFollowed?: boolean;
+  /** Go on until rounding is reached. */
+  isTight?: boolean;
 }
 
 /** Factor of ionic strength within which a followed answer is near. */
@@ -35,7 +37,7 @@ export function solveSystem(system: System, tableau: Tableau, ws: Workspace, opt
   if (system.isConvex) keepStart(ws, system);
   if (options.isCold) relax(system, tableau, ws);
   let result: SolveResult = "failed";
-  if (newton(system, tableau, ws, Math.min(options.maxIterations, NEWTON_STEPS))) result = "solved";
+  if (newton(system, tableau, ws, Math.min(options.maxIterations, NEWTON_STEPS), options.isTight ? 0 : undefined)) result = "solved";
   const isNear = ws.ionicStrength < NEAR_STRENGTH * startStrength && startStrength < NEAR_STRENGTH * ws.ionicStrength;
   const isSuspect = result === "solved" && !isNear && !tableau.gamma.isIdeal && ws.ionicStrength > CONVEX_STRENGTH;
   if (system.isConvex && (result === "failed" || isSuspect) && options.maxIterations > 1) {

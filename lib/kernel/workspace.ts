@@ -36,6 +36,7 @@ export interface Workspace {
   plus: Float64Array; minus: Float64Array;
   matrix: Float64Array;
   step: Float64Array;
+  savedStep: Float64Array;
   savedY: Float64Array;
   /** k0, k1, k2 of the pH-dependent constant. */
   varyingFit: [number, number, number];
@@ -53,7 +54,7 @@ export function makeWorkspace(tableau: Tableau, phaseCount: number): Workspace {
     totals: f(n), targets: f(phaseCount + 3), x: f(n), ionicStrength: 0, soluteSum: 0, c: f(ns),
     lnGamma: f(k), lnWater: 0, amounts: f(phaseCount + 3), iterations: 0,
     y: f(n + 2), base: f(ns), cs: f(ns), gammaSlope: f(k), debyeD: f(k), debyeBeta: f(k), debyeAz: f(k),
-    balanceTotal: f(n), plus: f(n + 2), minus: f(n + 2), matrix: f((n + 2) * (n + 2)), step: f(n + 2), savedY: f(n),
+    balanceTotal: f(n), plus: f(n + 2), minus: f(n + 2), matrix: f((n + 2) * (n + 2)), step: f(n + 2), savedStep: f(n + 2), savedY: f(n),
     varyingFit: tableau.varyingFit, waterSlope: 0, sumI: 0, sumM: 0,
   };
 }

@@ -35,7 +35,8 @@ function hasFault(solver: CaseSolver, w: ResolvedWater): boolean {
   if (facts.pH && outside(w.pH, -2, 16)) return true;
   if ((facts.DIC && outside(w.DIC, 0, Infinity)) || (facts.ANC && w.ANC === null) || (facts.alkalinity && w.alkalinity === null)) return true;
   const needsGas = facts.pCO2 || solver.kase.react?.gas === "open";
-  return needsGas && !(atmOf(w.pCO2, w.temperature ?? 25, w) > 0);
+  const temperatures = [w.temperature ?? 25, ...(facts.pH && w.pHTemperature !== null ? [w.pHTemperature] : [])];
+  return needsGas && temperatures.some((t) => !(atmOf(w.pCO2, t, w) > 0));
 }
 
 /** The combination itself, and the printed constants under it: elements and water must cancel and the constants must not. */
